@@ -15,31 +15,32 @@ std::string name_of(Origin origin);
 
 /// The moment a depolarisation front passes an electrode, or a twitch or pulse rises most steeply.
 struct Activation {
-  Seconds time;             ///< with the channel's skew
-  double sample = 0.0;      ///< fractional position in the signal: leads back to the raw samples
-  double amplitude = 0.0;   ///< peak to peak, in the channel's unit
-  double confidence = 0.0;  ///< 0 to 1
+  Seconds time;            ///< with the channel's skew
+  double sample = 0.0;     ///< fractional position in the signal: leads back to the raw samples
+  double amplitude = 0.0;  ///< peak to peak, in the channel's unit
+  double confidence = 0.0; ///< 0 to 1
   Origin origin = Origin::detected;
 };
 
 /// One contraction, foot to foot. Pressure in mmHg, tension in mN or the channel's own unit.
 struct MechanicalBeat {
-  Seconds time;              ///< steepest rise
-  Seconds foot;              ///< upstroke onset
+  Seconds time; ///< steepest rise
+  Seconds foot; ///< upstroke onset
   Seconds peak;
-  double diastolic = 0.0;    ///< at the foot (end-diastolic, not the minimum)
+  double diastolic = 0.0; ///< at the foot (end-diastolic, not the minimum)
   double systolic = 0.0;
   double developed = 0.0;    ///< systolic - diastolic
   double rate_of_rise = 0.0; ///< maximum of the derivative, unit/s
   double rate_of_fall = 0.0; ///< minimum of the derivative, unit/s, negative
   Seconds time_to_peak;      ///< from the foot
-  Seconds half_relaxation;   ///< from the peak to half of the developed value; 0 if not reached before the next foot
+  Seconds half_relaxation; ///< from the peak to half of the developed value; 0 if not reached before the next
+                           ///< foot
 };
 
 /// Why a stretch of a channel cannot be read.
 struct Unreadable {
   recording::Span span;
-  std::string reason;        ///< "gap", "saturation", "flat", "step", "noise" ...
+  std::string reason; ///< "gap", "saturation", "flat", "step", "noise" ...
 };
 
 /// Quality of one channel over one window.
@@ -55,15 +56,15 @@ struct QualityWindow {
 
 /// Everything found on one channel. `marks` strictly increasing in time.
 struct ChannelActivations {
-  std::string channel;       ///< label
+  std::string channel; ///< label
   std::vector<Activation> marks;
-  std::vector<MechanicalBeat> beats;     ///< tension and pressure: one a mark, same order
-  std::vector<Unreadable> unreadable;    ///< in order of time, not overlapping
+  std::vector<MechanicalBeat> beats;  ///< tension and pressure: one a mark, same order
+  std::vector<Unreadable> unreadable; ///< in order of time, not overlapping
   std::vector<QualityWindow> quality;
-  Seconds timing_sd;                     ///< standard deviation of one activation time from noise and sampling
-  double mains_hz = 0.0;                 ///< frequency removed; 0: none
-  std::string method;                    ///< how the time is defined, for the report
+  Seconds timing_sd;     ///< standard deviation of one activation time from noise and sampling
+  double mains_hz = 0.0; ///< frequency removed; 0: none
+  std::string method;    ///< how the time is defined, for the report
   std::vector<Warning> warnings;
 };
 
-}  // namespace chronodrome::activation
+} // namespace chronodrome::activation

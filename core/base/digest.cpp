@@ -45,6 +45,8 @@ std::string sha256_of(std::span<const std::byte> bytes) {
   return digest.hex();
 }
 
-std::string sha256_of(const std::string& text) { return sha256_of(std::as_bytes(std::span(text))); }
+std::string sha256_of(const std::string& text) {
+  return sha256_of(std::as_bytes(std::span(text)));
+}
 
-}  // namespace chronodrome
+} // namespace chronodrome

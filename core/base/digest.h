@@ -10,7 +10,7 @@ namespace chronodrome {
 
 /// SHA-256 of bytes given in pieces (FIPS 180-4; the computing is OpenSSL's).
 class Sha256 {
- public:
+public:
   Sha256();
   ~Sha256();
   Sha256(const Sha256&) = delete;
@@ -20,7 +20,7 @@ class Sha256 {
   /// 64 lower-case hex digits. Call once, last.
   std::string hex();
 
- private:
+private:
   struct State;
   std::unique_ptr<State> state_;
 };
@@ -28,4 +28,4 @@ class Sha256 {
 std::string sha256_of(std::span<const std::byte> bytes);
 std::string sha256_of(const std::string& text);
 
-}  // namespace chronodrome
+} // namespace chronodrome

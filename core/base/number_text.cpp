@@ -12,18 +12,22 @@ namespace {
 
 template <class... Format>
 std::string to_text(double value, Format... format) {
-  std::array<char, 400> buffer{};  // a fixed double needs at most 309 digits before the point
+  std::array<char, 400> buffer{}; // a fixed double needs at most 309 digits before the point
   const auto end = std::to_chars(buffer.data(), buffer.data() + buffer.size(), value, format...);
   return {buffer.data(), end.ptr};
 }
 
-bool is_blank(char c) { return c == ' ' || c == '\t' || c == '\r' || c == '\n'; }
+bool is_blank(char c) {
+  return c == ' ' || c == '\t' || c == '\r' || c == '\n';
+}
 
-}  // namespace
+} // namespace
 
 std::string_view trimmed(std::string_view text) {
-  while (!text.empty() && is_blank(text.front())) text.remove_prefix(1);
-  while (!text.empty() && is_blank(text.back())) text.remove_suffix(1);
+  while (!text.empty() && is_blank(text.front()))
+    text.remove_prefix(1);
+  while (!text.empty() && is_blank(text.back()))
+    text.remove_suffix(1);
   return text;
 }
 
@@ -38,7 +42,7 @@ std::optional<double> parse_number(std::string_view text, char decimal) {
   text = trimmed(text);
   if (text.size() > 1 && text.front() == '+' && text[1] != '-') text.remove_prefix(1);
   if (text.empty()) return std::nullopt;
-  std::string fortran;  // 1.5D-8, as some instruments write it
+  std::string fortran; // 1.5D-8, as some instruments write it
   const auto exponent = text.find_first_of("dD");
   if (exponent != std::string_view::npos) {
     fortran = text;
@@ -47,7 +51,8 @@ std::optional<double> parse_number(std::string_view text, char decimal) {
   }
   double value = 0.0;
   const fast_float::parse_options options(fast_float::chars_format::general, decimal);
-  const auto [end, status] = fast_float::from_chars_advanced(text.data(), text.data() + text.size(), value, options);
+  const auto [end, status] =
+      fast_float::from_chars_advanced(text.data(), text.data() + text.size(), value, options);
   if (status != std::errc() || end != text.data() + text.size() || !std::isfinite(value)) return std::nullopt;
   return value;
 }
@@ -61,10 +66,12 @@ std::optional<std::int64_t> parse_integer(std::string_view text) {
   return value;
 }
 
-std::string number_text(double value) { return number_text(value, 12); }
+std::string number_text(double value) {
+  return number_text(value, 12);
+}
 
 std::string number_text(double value, int digits) {
-  if (value == 0.0) return "0";  // no "-0" in a file
+  if (value == 0.0) return "0"; // no "-0" in a file
   return to_text(value, std::chars_format::general, digits);
 }
 
@@ -75,6 +82,8 @@ std::string fixed_text(double value, int decimals) {
   return text;
 }
 
-std::string exact_text(double value) { return value == 0.0 ? "0" : to_text(value); }
+std::string exact_text(double value) {
+  return value == 0.0 ? "0" : to_text(value);
+}
 
-}  // namespace chronodrome
+} // namespace chronodrome

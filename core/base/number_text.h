@@ -9,8 +9,9 @@
 
 namespace chronodrome {
 
-/// The number that the whole of `text` spells (surrounding blanks allowed; `1.5`, `-2e-7`, `1.5D-8`), with `decimal`
-/// as its decimal mark, whatever the locale. Nothing for anything else, for "nan", "inf" and values beyond a double.
+/// The number that the whole of `text` spells (surrounding blanks allowed; `1.5`, `-2e-7`, `1.5D-8`), with
+/// `decimal` as its decimal mark, whatever the locale. Nothing for anything else, for "nan", "inf" and values
+/// beyond a double.
 std::optional<double> parse_number(std::string_view text, char decimal = '.');
 
 /// A whole number within the range of int64, or nothing.
@@ -34,4 +35,4 @@ std::string_view trimmed(std::string_view text);
 /// ASCII letters in lower case.
 std::string lower_case(std::string_view text);
 
-}  // namespace chronodrome
+} // namespace chronodrome

@@ -25,7 +25,8 @@ void parallel_for(std::size_t count, unsigned threads, const std::function<void(
   };
   {
     std::vector<std::jthread> pool;
-    for (std::size_t i = 1; i < workers; ++i) pool.emplace_back(run);
+    for (std::size_t i = 1; i < workers; ++i)
+      pool.emplace_back(run);
     run();
   }
   for (const auto& failure : failures) {
@@ -33,4 +34,4 @@ void parallel_for(std::size_t count, unsigned threads, const std::function<void(
   }
 }
 
-}  // namespace chronodrome
+} // namespace chronodrome

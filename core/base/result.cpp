@@ -16,12 +16,12 @@ std::string line_of(const std::string& file, const Place& place, const char* kin
   text += std::string(": ") + kind + ": " + what;
   if (!remedy.empty()) text += "; " + remedy;
   for (char& c : text) {
-    if (c == '\n' || c == '\r') c = ' ';  // one message, one line
+    if (c == '\n' || c == '\r') c = ' '; // one message, one line
   }
   return text;
 }
 
-}  // namespace
+} // namespace
 
 std::string describe(const Error& error) {
   return line_of(error.file, error.place, "error", error.what, error.remedy);
@@ -31,4 +31,4 @@ std::string describe(const Warning& warning) {
   return line_of(warning.file, warning.place, "warning", warning.what, warning.remedy);
 }
 
-}  // namespace chronodrome
+} // namespace chronodrome

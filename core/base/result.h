@@ -11,7 +11,8 @@
 
 namespace chronodrome {
 
-/// Where in a file something stands. Text files give line (from 1) and column (from 1); binary files a byte offset.
+/// Where in a file something stands. Text files give line (from 1) and column (from 1); binary files a byte
+/// offset.
 struct Place {
   std::optional<std::size_t> line;
   std::optional<std::size_t> column;
@@ -23,22 +24,23 @@ struct Place {
 };
 
 enum class ErrorCode {
-  file_missing,         ///< no such file, or it cannot be opened
-  read_failed,          ///< the system could not deliver bytes of an open file
-  wrong_format,         ///< not the kind of file it is taken for
-  damaged,              ///< the right kind, but broken beyond use
-  over_limit,           ///< larger than a stated limit
-  ambiguous,            ///< can be read in two ways that give different numbers
-  bad_value,            ///< a field holds something that it may not hold
-  digest_mismatch,      ///< the raw file is not the one the session was made from
-  unsupported_version,  ///< written by a newer program
-  bad_usage,            ///< the caller's words or settings are off
-  cannot_write,         ///< output could not be written
-  not_enough_data,      ///< the data cannot answer
-  internal_fault,       ///< a bug in Chronodrome
+  file_missing,        ///< no such file, or it cannot be opened
+  read_failed,         ///< the system could not deliver bytes of an open file
+  wrong_format,        ///< not the kind of file it is taken for
+  damaged,             ///< the right kind, but broken beyond use
+  over_limit,          ///< larger than a stated limit
+  ambiguous,           ///< can be read in two ways that give different numbers
+  bad_value,           ///< a field holds something that it may not hold
+  digest_mismatch,     ///< the raw file is not the one the session was made from
+  unsupported_version, ///< written by a newer program
+  bad_usage,           ///< the caller's words or settings are off
+  cannot_write,        ///< output could not be written
+  not_enough_data,     ///< the data cannot answer
+  internal_fault,      ///< a bug in Chronodrome
 };
 
-/// What went wrong, in words a physiologist uses: `what` says what was found and what was expected, `remedy` what to do.
+/// What went wrong, in words a physiologist uses: `what` says what was found and what was expected, `remedy`
+/// what to do.
 struct Error {
   ErrorCode code = ErrorCode::internal_fault;
   std::string file;
@@ -55,16 +57,17 @@ struct Warning {
   std::string remedy;
 };
 
-/// `FILE:LINE: error: what; remedy` (line and column for text, byte offset for binary; place 1 or byte 0 if none is known).
+/// `FILE:LINE: error: what; remedy` (line and column for text, byte offset for binary; place 1 or byte 0 if
+/// none is known).
 std::string describe(const Error& error);
 std::string describe(const Warning& warning);
 
 /// A value or an Error. Asking an Error for its value is a fault of the caller and stops a debug build.
 template <class T>
 class [[nodiscard]] Result {
- public:
-  Result(T value) : content_(std::move(value)) {}          // NOLINT(google-explicit-constructor)
-  Result(Error error) : content_(std::move(error)) {}      // NOLINT(google-explicit-constructor)
+public:
+  Result(T value) : content_(std::move(value)) {}     // NOLINT(google-explicit-constructor)
+  Result(Error error) : content_(std::move(error)) {} // NOLINT(google-explicit-constructor)
 
   [[nodiscard]] bool ok() const { return std::holds_alternative<T>(content_); }
   explicit operator bool() const { return ok(); }
@@ -77,12 +80,14 @@ class [[nodiscard]] Result {
   T& operator*() & { return value(); }
   const T& operator*() const& { return value(); }
 
- private:
+private:
   std::variant<T, Error> content_;
 };
 
 /// Success without a value, or an Error.
 using Done = Result<std::monostate>;
-inline Done done() { return Done(std::monostate{}); }
+inline Done done() {
+  return Done(std::monostate{});
+}
 
-}  // namespace chronodrome
+} // namespace chronodrome

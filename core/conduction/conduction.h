@@ -16,22 +16,22 @@ std::string name_of(DelayState state);
 
 /// One row of a pathway: each activation of `from` and of `to` stands in exactly one.
 struct DelayRow {
-  std::optional<std::size_t> from;  ///< index into the marks of the from channel
-  std::optional<std::size_t> to;    ///< index into the marks of the to channel
+  std::optional<std::size_t> from; ///< index into the marks of the from channel
+  std::optional<std::size_t> to;   ///< index into the marks of the to channel
   std::optional<Seconds> from_time;
   std::optional<Seconds> to_time;
-  std::optional<Seconds> delay;     ///< to - from; negative for retrograde
+  std::optional<Seconds> delay; ///< to - from; negative for retrograde
   DelayState state = DelayState::unpaired;
-  bool ambiguous = false;           ///< the times alone do not say which `from` caused this `to`
+  bool ambiguous = false; ///< the times alone do not say which `from` caused this `to`
 };
 
 /// Conduction from one electrode to another. Rows in order of their earliest time.
 struct PathwayDelays {
   std::string pathway, from, to;
-  bool within_chamber = false;      ///< signed nearest pairing instead of cause and effect
-  Seconds control_delay;            ///< what the pairing took as the usual delay
+  bool within_chamber = false; ///< signed nearest pairing instead of cause and effect
+  Seconds control_delay;       ///< what the pairing took as the usual delay
   std::vector<DelayRow> rows;
-  std::vector<recording::Span> dissociated;  ///< stretches in which the phase test found no conduction
+  std::vector<recording::Span> dissociated; ///< stretches in which the phase test found no conduction
 };
 
-}  // namespace chronodrome::conduction
+} // namespace chronodrome::conduction

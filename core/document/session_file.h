@@ -19,12 +19,12 @@ struct Preparation {
   std::optional<double> temperature_c;
   std::optional<double> bath_volume_ml;
   std::optional<double> mass_g;
-  Seconds arrival_delay;  ///< `arrival_delay_s`: from the tap to the tissue
+  Seconds arrival_delay; ///< `arrival_delay_s`: from the tap to the tissue
 };
 
 struct RecordingFile {
-  std::string path;                   ///< relative to the session file, inside its folder tree
-  std::optional<std::string> sha256;  ///< checked if given
+  std::string path;                  ///< relative to the session file, inside its folder tree
+  std::optional<std::string> sha256; ///< checked if given
 };
 
 /// How the CSV is to be read; nothing: find out, and refuse where that is not sure.
@@ -32,7 +32,7 @@ struct CsvChoices {
   std::optional<double> rate_hz;
   std::optional<char> delimiter;
   std::optional<char> decimal;
-  std::optional<std::string> time_column;  ///< header text; an empty text: there is none
+  std::optional<std::string> time_column; ///< header text; an empty text: there is none
 };
 
 /// Two raw readings and what they stand for.
@@ -69,20 +69,20 @@ struct Correction {
 
 /// A session file (contract section 3), as plain values.
 struct SessionFile {
-  std::string path;    ///< where it was read from
-  std::string folder;  ///< its folder, to which paths are relative
-  std::string name;    ///< NAME of NAME.session.json
+  std::string path;   ///< where it was read from
+  std::string folder; ///< its folder, to which paths are relative
+  std::string name;   ///< NAME of NAME.session.json
   Preparation preparation;
   std::vector<RecordingFile> files;
   CsvChoices csv;
   std::vector<ChannelEntry> channels;
   std::vector<PathwayEntry> pathways;
-  std::optional<std::string> protocol_file;  ///< nothing: EDF+ annotations carry the protocol
+  std::optional<std::string> protocol_file; ///< nothing: EDF+ annotations carry the protocol
   std::vector<std::string> measures;
   std::map<std::string, SettingValue> analysis;
   std::vector<Correction> review;
-  std::string as_read;  ///< the JSON text, so that unknown keys survive load and save
+  std::string as_read; ///< the JSON text, so that unknown keys survive load and save
   std::vector<Warning> warnings;
 };
 
-}  // namespace chronodrome::document
+} // namespace chronodrome::document

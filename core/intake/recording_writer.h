@@ -13,11 +13,11 @@ namespace chronodrome::intake {
 
 /// A signal to be written, sampled from time zero on without a gap.
 struct WrittenSignal {
-  std::string label;             ///< at most 16 ASCII characters in an EDF file
+  std::string label; ///< at most 16 ASCII characters in an EDF file
   std::string unit;
   Hertz rate;
-  std::vector<double> samples;   ///< in `unit`
-  double physical_min = 0.0;     ///< EDF scale; both 0: the range of the samples, rounded outwards
+  std::vector<double> samples; ///< in `unit`
+  double physical_min = 0.0;   ///< EDF scale; both 0: the range of the samples, rounded outwards
   double physical_max = 0.0;
   std::string prefilter;
 };
@@ -29,12 +29,12 @@ struct WrittenAnnotation {
 };
 
 struct WrittenRecording {
-  std::string clock_start;       ///< ISO 8601 without zone, "2026-03-04T09:30:00"; empty: unknown
-  std::string recording_text;    ///< free text for the EDF recording field (no blanks inside a subfield)
+  std::string clock_start;    ///< ISO 8601 without zone, "2026-03-04T09:30:00"; empty: unknown
+  std::string recording_text; ///< free text for the EDF recording field (no blanks inside a subfield)
   std::vector<WrittenSignal> signals;
   std::vector<WrittenAnnotation> annotations;
-  Seconds record_duration{1.0};  ///< rate x duration must be whole for every signal
-  std::vector<recording::Span> left_out;  ///< EDF+D: records that lie inside are not written
+  Seconds record_duration{1.0};          ///< rate x duration must be whole for every signal
+  std::vector<recording::Span> left_out; ///< EDF+D: records that lie inside are not written
 };
 
 enum class EdfKind { plain, continuous, discontinuous };
@@ -46,9 +46,9 @@ Done write_edf(const std::string& path, const WrittenRecording& recording, EdfKi
 struct CsvLayout {
   char delimiter = ',';
   char decimal = '.';
-  std::vector<std::string> header_lines;   ///< written before the column names, as they are
-  std::optional<std::string> time_column;  ///< its name, for example "time"; nothing: no time column
-  bool units_row = false;                  ///< a second row with the units; otherwise "name (unit)" in the first
+  std::vector<std::string> header_lines;  ///< written before the column names, as they are
+  std::optional<std::string> time_column; ///< its name, for example "time"; nothing: no time column
+  bool units_row = false; ///< a second row with the units; otherwise "name (unit)" in the first
   int time_decimals = 4;
   int value_decimals = 4;
 };
@@ -57,4 +57,4 @@ struct CsvLayout {
 /// Errors: bad_usage (different rates), cannot_write.
 Done write_csv(const std::string& path, const WrittenRecording& recording, const CsvLayout& layout);
 
-}  // namespace chronodrome::intake
+} // namespace chronodrome::intake

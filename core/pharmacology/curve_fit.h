@@ -14,13 +14,13 @@ namespace chronodrome::pharmacology {
 struct CurvePoint {
   Molar concentration;
   double response = 0.0;
-  double weight = 1.0;  ///< relative 1/variance, known before the fit; > 0
+  double weight = 1.0; ///< relative 1/variance, known before the fit; > 0
 };
 
 /// A number with its 95 % interval; a bound that the data do not give is missing.
 struct Estimate {
   std::optional<double> estimate, se, ci_low, ci_high;
-  std::string ci_method;  ///< "profile", "wald" or empty
+  std::string ci_method; ///< "profile", "wald" or empty
 };
 
 struct NamedEstimate {
@@ -31,17 +31,17 @@ struct NamedEstimate {
 /// The result of fitting one curve (contract section 6). A default-made fit is not usable.
 struct CurveFit {
   std::string model;
-  std::string likelihood;                  ///< "gaussian" or "censored"
+  std::string likelihood; ///< "gaussian" or "censored"
   std::size_t n_points = 0;
-  std::vector<NamedEstimate> parameters;   ///< in the model's documented order
-  std::vector<NamedEstimate> derived;      ///< ec50_mol_per_l, effect_max
+  std::vector<NamedEstimate> parameters; ///< in the model's documented order
+  std::vector<NamedEstimate> derived;    ///< ec50_mol_per_l, effect_max
   std::optional<double> residual_sd, rss, aicc;
   int df = 0;
   bool converged = false;
-  std::vector<std::string> flags;          ///< of the closed list
-  std::string reason;                      ///< one sentence for the first flag, if any
+  std::vector<std::string> flags; ///< of the closed list
+  std::string reason;             ///< one sentence for the first flag, if any
 
   [[nodiscard]] const Estimate* find(const std::string& name) const;
 };
 
-}  // namespace chronodrome::pharmacology
+} // namespace chronodrome::pharmacology

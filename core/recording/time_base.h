@@ -24,16 +24,16 @@ struct Span {
 
 /// When each sample of a signal was taken: a rate, and the runs between gaps. Missing samples are not stored.
 class TimeBase {
- public:
+public:
   TimeBase() = default;
   /// Requires: rate > 0; runs in order of time and of sample, none empty, none overlapping.
   TimeBase(Hertz rate, std::vector<Run> runs);
 
   [[nodiscard]] Hertz rate() const { return rate_; }
   [[nodiscard]] const std::vector<Run>& runs() const { return runs_; }
-  [[nodiscard]] std::size_t size() const;      ///< samples stored
-  [[nodiscard]] Seconds start() const;         ///< of the first sample (0 if empty)
-  [[nodiscard]] Seconds end() const;           ///< one sample period after the last sample
+  [[nodiscard]] std::size_t size() const; ///< samples stored
+  [[nodiscard]] Seconds start() const;    ///< of the first sample (0 if empty)
+  [[nodiscard]] Seconds end() const;      ///< one sample period after the last sample
   /// Time of a fractional sample position; positions belong to the run that holds floor(position).
   [[nodiscard]] Seconds time_at(double position) const;
   /// Fractional sample position at a time; nothing in a gap or outside.
@@ -47,9 +47,9 @@ class TimeBase {
   /// True if [from, to] lies in one run.
   [[nodiscard]] bool contiguous(Seconds from, Seconds to) const;
 
- private:
+private:
   Hertz rate_{1.0};
   std::vector<Run> runs_;
 };
 
-}  // namespace chronodrome::recording
+} // namespace chronodrome::recording

@@ -19,21 +19,21 @@ struct Response {
   int curve = 0;
   std::string agent, background;
   Molar concentration;
-  std::string measure;               ///< `rate:RA`, `delay:AV` ...
+  std::string measure; ///< `rate:RA`, `delay:AV` ...
   std::string unit;
-  std::optional<double> value;       ///< only where status is ok or not_steady
-  std::optional<double> sem;         ///< over beats, corrected for lag-1 correlation; never an n of preparations
+  std::optional<double> value; ///< only where status is ok or not_steady
+  std::optional<double> sem;   ///< over beats, corrected for lag-1 correlation; never an n of preparations
   std::size_t n_beats = 0;
   Seconds window_start, window_end;
   Status status = Status::ok;
-  std::optional<double> limit;       ///< for censored
-  std::string limit_side;            ///< "at_least" or "at_most"
-  std::vector<std::string> flags;    ///< in words, for the summary
+  std::optional<double> limit;    ///< for censored
+  std::string limit_side;         ///< "at_least" or "at_most"
+  std::vector<std::string> flags; ///< in words, for the summary
 };
 
 struct Responses {
-  std::vector<Response> rows;        ///< by curve, measure (session order), concentration in order of time
+  std::vector<Response> rows; ///< by curve, measure (session order), concentration in order of time
   std::vector<Warning> warnings;
 };
 
-}  // namespace chronodrome::response
+} // namespace chronodrome::response

@@ -17,7 +17,7 @@ struct Episode {
 };
 
 struct Rhythm {
-  std::vector<Episode> episodes;  ///< in order of start; rows may overlap
+  std::vector<Episode> episodes; ///< in order of start; rows may overlap
 };
 
-}  // namespace chronodrome::rhythm
+} // namespace chronodrome::rhythm

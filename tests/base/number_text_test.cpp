@@ -12,7 +12,8 @@ TEST_CASE("a number is the whole text or nothing", "[number]") {
   CHECK(parse_number("1,5", ',') == 1.5);
   CHECK(parse_number("1.5D-08") == 1.5e-8);
   CHECK(parse_number("1,5E-08", ',') == 1.5e-8);
-  for (const char* bad : {"", " ", "1,5", "1.5x", "nan", "inf", "1e400", "0x10", "--1", "+-1", "OVER", "1 2"}) {
+  for (const char* bad :
+       {"", " ", "1,5", "1.5x", "nan", "inf", "1e400", "0x10", "--1", "+-1", "OVER", "1 2"}) {
     CAPTURE(bad);
     CHECK_FALSE(parse_number(bad).has_value());
   }
