@@ -103,7 +103,8 @@ private:
     if (group.blocked >= settings_.complete_block_beats || silent > settings_.complete_block_time)
       return "complete_av_block";
     if (group.blocked >= 2) return "high_degree_av_block";
-    if (group.conducted <= 1) return "two_to_one";
+    if (group.conducted == 0) return "undetermined";
+    if (group.conducted == 1) return "two_to_one";
     const auto next = next_delay(g);
     const std::string ratio = " " + std::to_string(group.size()) + ":" + std::to_string(group.conducted);
     if (!next) return "undetermined" + ratio;
@@ -171,7 +172,7 @@ private:
     for (auto& episode : found_) {
       if (episode.kind == "two_to_one" && episode.detail.rfind("groups=1;", 0) == 0) {
         episode.kind = "undetermined";
-        episode.detail = "rule=one conducted beat before one blocked beat;" + episode.detail;
+        episode.detail = "rule=one dropped beat among too few conducted ones;" + episode.detail;
       }
     }
   }
