@@ -1,0 +1,124 @@
+// Chronodrome, GPL-3.0-or-later.
+#include <algorithm>
+#include <filesystem>
+#include <iostream>
+#include <map>
+#include <thread>
+
+#include "base/parallel.h"
+#include "commands.h"
+#include "result_tables.h"
+#include "results/output_folder.h"
+#include "results/tables.h"
+#include "session/analysis.h"
+
+namespace fs = std::filesystem;
+
+namespace chronodrome::cli {
+namespace {
+
+constexpr std::string_view kEnding = ".session.json";
+
+/// NAME of NAME.session.json; nothing if the file is called otherwise.
+std::optional<std::string> name_of_session(const std::string& path) {
+  const std::string file = fs::path(path).filename().string();
+  if (file.size() <= kEnding.size() || !file.ends_with(kEnding)) return std::nullopt;
+  return file.substr(0, file.size() - kEnding.size());
+}
+
+/// Names of all sessions, or the first reason not to start.
+Result<std::vector<std::string>> names_of(const std::vector<std::string>& sessions) {
+  std::map<std::string, std::string> first_with;
+  std::vector<std::string> names;
+  for (const auto& path : sessions) {
+    const auto name = name_of_session(path);
+    if (!name) {
+      return Error{ErrorCode::bad_usage,
+                   path,
+                   {},
+                   "a session file is called NAME.session.json",
+                   "rename it, or name the session instead of the recording"};
+    }
+    const auto [place, is_new] = first_with.emplace(*name, path);
+    if (!is_new) {
+      return Error{ErrorCode::bad_usage,
+                   path,
+                   {},
+                   "two sessions have the name " + *name + " (the other is " + place->second +
+                       "), and would share one folder",
+                   "rename one of them, or analyse them into different folders"};
+    }
+    names.push_back(*name);
+  }
+  return names;
+}
+
+/// What is left of one session after its analysis.
+struct Outcome {
+  std::optional<Error> failure;
+  std::vector<Warning> warnings;
+  std::string shown; ///< for standard output
+};
+
+Outcome analyse_one(const std::string& path, const std::string& folder, unsigned threads) {
+  Outcome outcome;
+  session::LoadOptions options;
+  options.threads = threads;
+  const auto inputs = session::load_session(path, options);
+  if (!inputs) {
+    outcome.failure = inputs.error();
+    return outcome;
+  }
+  const auto result = session::analyse(*inputs, threads);
+  if (!result) {
+    outcome.failure = result.error();
+    outcome.warnings = inputs->warnings;
+    return outcome;
+  }
+  outcome.warnings = result->warnings;
+  const auto files = results::result_files(*result, CHRONODROME_VERSION);
+  if (const Done written = results::write_output_folder(folder, files); !written) {
+    outcome.failure = written.error();
+    return outcome;
+  }
+  outcome.shown = session_text(*result) + "files: " + folder + "/\n";
+  return outcome;
+}
+
+} // namespace
+
+int analyse(const AnalyseWords& words) {
+  const auto names = names_of(words.sessions);
+  if (!names) return refuse(names.error());
+  if (const Done usable = results::check_output_folder(words.out, *names); !usable) {
+    report(usable.error());
+    return kWrongUsage;
+  }
+  std::vector<Outcome> outcomes(words.sessions.size());
+  std::size_t failed = 0;
+  const auto show = [&](std::size_t i) {
+    for (const auto& warning : outcomes[i].warnings)
+      report(warning);
+    if (outcomes[i].failure) report(*outcomes[i].failure);
+    std::cout << outcomes[i].shown << std::flush;
+    if (outcomes[i].failure) ++failed;
+  };
+  const auto folder_of = [&](std::size_t i) { return (fs::path(words.out) / (*names)[i]).string(); };
+  // One session uses all threads itself; of several, each takes one, in groups that are shown in order.
+  const unsigned jobs = words.jobs != 0 ? words.jobs : std::max(1U, std::thread::hardware_concurrency());
+  for (std::size_t start = 0; start < outcomes.size(); start += jobs) {
+    const std::size_t group = std::min<std::size_t>(jobs, outcomes.size() - start);
+    const unsigned each = group > 1 ? std::max(1U, jobs / static_cast<unsigned>(group)) : jobs;
+    parallel_for(group, jobs, [&](std::size_t i) {
+      outcomes[start + i] = analyse_one(words.sessions[start + i], folder_of(start + i), each);
+    });
+    for (std::size_t i = 0; i < group; ++i) {
+      show(start + i);
+      outcomes[start + i] = {};
+    }
+  }
+  if (failed == 0) return kAllDone;
+  return failed == outcomes.size() ? kNothingDone : kSomeFailed;
+}
+
+} // namespace chronodrome::cli

@@ -1,0 +1,219 @@
+// Chronodrome, GPL-3.0-or-later.
+#include "session/analysis.h"
+
+#include <algorithm>
+
+#include "activation/compute.h"
+#include "activation/corrections.h"
+#include "base/parallel.h"
+#include "conduction/pairing.h"
+#include "protocol/curve_plan.h"
+#include "session/channels.h"
+#include "session/conduction_facts.h"
+#include "session/curves.h"
+#include "session/exclusions.h"
+#include "session/flow_series.h"
+
+namespace chronodrome::session {
+namespace {
+
+using activation::ChannelActivations;
+using recording::Channel;
+using recording::Role;
+
+/// Runs the stages one after the other and keeps what each gave.
+class Analysis {
+public:
+  Analysis(const SessionInputs& inputs, unsigned threads) : in_(inputs), threads_(threads) {}
+
+  Result<SessionResult> run() {
+    take_inputs();
+    for (const auto step : {&Analysis::plan_steps, &Analysis::find_activations, &Analysis::pair_electrodes,
+                            &Analysis::read_rhythm, &Analysis::read_responses}) {
+      if (auto error = (this->*step)()) {
+        if (error->file.empty()) error->file = in_.session.path;
+        return *error;
+      }
+    }
+    out_.curves = fit_curves(out_.responses, in_.session.preparation.label, in_.settings.model,
+                             in_.settings.fit, threads_);
+    return std::move(out_);
+  }
+
+private:
+  void take_inputs() {
+    out_.session = in_.session;
+    out_.session_sha256 = in_.session_sha256;
+    out_.recording = in_.recording;
+    out_.protocol = in_.protocol;
+    out_.settings = in_effect(in_.settings);
+    out_.settings_changed = in_.settings_changed;
+    out_.warnings = in_.warnings;
+  }
+
+  void warn(std::vector<Warning> more) {
+    for (auto& warning : more) {
+      if (warning.file.empty()) warning.file = in_.session.path;
+      out_.warnings.push_back(std::move(warning));
+    }
+  }
+
+  std::optional<Error> find_activations() {
+    auto channels = channels_of(in_.session, in_.recording);
+    if (!channels) return channels.error();
+    warn(channels->warnings);
+    out_.channels = channels->channels;
+    auto found = activation::compute_all(out_.channels, in_.settings.activation, threads_);
+    exclusions_ = exclusions_of(in_.session.review);
+    for (std::size_t i = 0; i < found.size(); ++i) {
+      if (!found[i]) return found[i].error();
+      const Channel& channel = out_.channels[i];
+      ChannelActivations& marks = *found[i];
+      activation::apply_corrections(marks, in_.session.review, channel, in_.settings.activation);
+      warn(marks.warnings);
+      out_.corrections.push_back(counts_of(marks, channel.label));
+      out_.intervals.push_back(rhythm::intervals_of(marks, excluded_spans(all_exclusions(), channel.label),
+                                                    in_.settings.intervals));
+      out_.activations.push_back(std::move(marks));
+    }
+    return std::nullopt;
+  }
+
+  [[nodiscard]] CorrectionCounts counts_of(const ChannelActivations& marks, const std::string& label) const {
+    CorrectionCounts counts;
+    for (const auto& mark : marks.marks) {
+      counts.added += mark.origin == activation::Origin::added ? 1 : 0;
+      counts.moved += mark.origin == activation::Origin::moved ? 1 : 0;
+    }
+    for (const auto& correction : in_.session.review) {
+      const bool counted = correction.channel == label && correction.what == document::CorrectionKind::remove;
+      counts.removed += counted ? 1 : 0;
+    }
+    return counts;
+  }
+
+  /// The user's exclusions and those of the drug log.
+  [[nodiscard]] std::vector<response::Exclusion> all_exclusions() const {
+    std::vector<response::Exclusion> all = exclusions_;
+    for (const auto& stretch : plan_.excluded)
+      all.push_back({"", {stretch.start, stretch.end}});
+    return all;
+  }
+
+  [[nodiscard]] std::optional<std::size_t> index_of(const std::string& label) const {
+    for (std::size_t i = 0; i < out_.channels.size(); ++i) {
+      if (out_.channels[i].label == label) return i;
+    }
+    return std::nullopt;
+  }
+
+  std::optional<Error> pair_electrodes() {
+    for (const auto& entry : in_.session.pathways) {
+      const auto from = index_of(entry.from);
+      const auto to = index_of(entry.to);
+      if (!from || !to) {
+        return Error{ErrorCode::bad_value,
+                     in_.session.path,
+                     {},
+                     "pathway \"" + entry.label + "\" runs between channels that the session does not list",
+                     "name two labels of channels"};
+      }
+      auto paired =
+          conduction::pair(entry.label, {&out_.activations[*from], out_.channels[*from].role},
+                           {&out_.activations[*to], out_.channels[*to].role}, in_.settings.conduction);
+      if (!paired) return paired.error();
+      const auto distance = entry.distance_mm ? std::optional(millimetres(*entry.distance_mm)) : std::nullopt;
+      const auto facts = conduction_facts(*paired, distance);
+      out_.conduction_facts.insert(out_.conduction_facts.end(), facts.begin(), facts.end());
+      out_.pathways.push_back(std::move(paired).value());
+    }
+    return std::nullopt;
+  }
+
+  /// First channel of a role, in the session's order.
+  [[nodiscard]] const ChannelActivations* first_of(std::initializer_list<Role> roles) const {
+    for (const Role role : roles) {
+      for (std::size_t i = 0; i < out_.channels.size(); ++i) {
+        if (out_.channels[i].role == role) return &out_.activations[i];
+      }
+    }
+    return nullptr;
+  }
+
+  std::optional<Error> read_rhythm() {
+    rhythm::RhythmInputs inputs;
+    inputs.atrial = first_of({Role::atrial, Role::sinus});
+    inputs.ventricular = first_of({Role::ventricular, Role::ecg});
+    inputs.end = in_.recording->duration;
+    for (const auto& pathway : out_.pathways) {
+      const Role from = out_.channels[*index_of(pathway.from)].role;
+      const Role to = out_.channels[*index_of(pathway.to)].role;
+      const bool atrioventricular =
+          (from == Role::atrial || from == Role::sinus) && (to == Role::ventricular || to == Role::ecg);
+      if (atrioventricular && inputs.av == nullptr) inputs.av = &pathway;
+    }
+    auto settings = in_.settings.rhythm;
+    settings.timing_tolerance = std::max(settings.timing_tolerance, timing_tolerance(inputs));
+    auto rhythm = rhythm::compute(inputs, settings);
+    if (!rhythm) return rhythm.error();
+    out_.rhythm = std::move(rhythm).value();
+    return std::nullopt;
+  }
+
+  /// Two delays that differ by less than three timing SDs, or 1.5 sample periods, are equal.
+  [[nodiscard]] Seconds timing_tolerance(const rhythm::RhythmInputs& inputs) const {
+    Seconds tolerance(0.0);
+    if (inputs.av == nullptr) return tolerance;
+    for (const auto& label : {inputs.av->from, inputs.av->to}) {
+      const std::size_t i = *index_of(label);
+      tolerance = std::max({tolerance, 3.0 * out_.activations[i].timing_sd,
+                            1.5 * period_of(out_.channels[i].time_base().rate())});
+    }
+    return tolerance;
+  }
+
+  std::optional<Error> plan_steps() {
+    protocol::BathConditions bath;
+    bath.volume_ml = in_.session.preparation.bath_volume_ml;
+    bath.arrival_delay = in_.session.preparation.arrival_delay;
+    auto plan = protocol::plan_curves(in_.protocol, bath, in_.recording->duration);
+    if (!plan) return plan.error();
+    plan_ = std::move(plan).value();
+    warn(plan_.warnings);
+    return std::nullopt;
+  }
+
+  std::optional<Error> read_responses() {
+    response::Inputs inputs;
+    inputs.plan = &plan_;
+    for (std::size_t i = 0; i < out_.channels.size(); ++i) {
+      inputs.channels.push_back({&out_.activations[i], out_.channels[i].role, out_.channels[i].unit});
+      if (out_.channels[i].role == Role::flow) inputs.flows.push_back(second_means(out_.channels[i]));
+    }
+    for (std::size_t i = 0; i < out_.pathways.size(); ++i) {
+      const auto& mm = in_.session.pathways[i].distance_mm;
+      inputs.pathways.push_back({&out_.pathways[i], mm ? std::optional(millimetres(*mm)) : std::nullopt});
+    }
+    inputs.excluded = exclusions_;
+    inputs.measures = in_.session.measures;
+    auto responses = response::compute(inputs, in_.settings.response);
+    if (!responses) return responses.error();
+    out_.responses = std::move(responses).value();
+    warn(out_.responses.warnings);
+    return std::nullopt;
+  }
+
+  const SessionInputs& in_;
+  unsigned threads_;
+  SessionResult out_;
+  protocol::CurvePlan plan_;
+  std::vector<response::Exclusion> exclusions_;
+};
+
+} // namespace
+
+Result<SessionResult> analyse(const SessionInputs& inputs, unsigned threads) {
+  return Analysis(inputs, threads).run();
+}
+
+} // namespace chronodrome::session
