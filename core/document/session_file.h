@@ -58,6 +58,11 @@ struct PathwayEntry {
 using SettingValue = std::variant<bool, double, std::string>;
 
 enum class CorrectionKind { add, remove, move, retype, exclude, include, redetect };
+/// As the file writes it: `delete` for remove.
+std::string name_of(CorrectionKind kind);
+std::optional<CorrectionKind> correction_named(const std::string& name);
+/// All names, as a message lists them.
+std::string correction_names();
 
 /// One correction by the user: data, applied between stages and replayed on every run.
 struct Correction {
@@ -67,11 +72,15 @@ struct Correction {
   std::optional<Seconds> time, to_time;
 };
 
-/// A session file (contract section 3), as plain values.
+/// The newest session format that this program writes.
+inline constexpr int kSessionVersion = 1;
+
+/// A session file (`resources/formats/session.md`), as plain values.
 struct SessionFile {
   std::string path;   ///< where it was read from
   std::string folder; ///< its folder, to which paths are relative
   std::string name;   ///< NAME of NAME.session.json
+  int version = 1;    ///< above kSessionVersion: opened for reading only, never saved
   Preparation preparation;
   std::vector<RecordingFile> files;
   CsvChoices csv;
@@ -80,8 +89,8 @@ struct SessionFile {
   std::optional<std::string> protocol_file; ///< nothing: EDF+ annotations carry the protocol
   std::vector<std::string> measures;
   std::map<std::string, SettingValue> analysis;
-  std::vector<Correction> review;
-  std::string as_read; ///< the JSON text, so that unknown keys survive load and save
+  std::vector<Correction> review; ///< by seq
+  std::string as_read;            ///< the JSON text, so that unknown keys survive load and save
   std::vector<Warning> warnings;
 };
 

@@ -1,6 +1,7 @@
 // Chronodrome, GPL-3.0-or-later.
 #pragma once
 
+#include <cstddef>
 #include <optional>
 #include <string>
 #include <vector>
@@ -23,6 +24,12 @@ enum class EventKind {
 };
 std::string name_of(EventKind kind);
 std::optional<EventKind> event_named(const std::string& name);
+/// All names, as a message lists them.
+std::string event_names();
+
+/// Two spellings are one agent if this is equal: ASCII letters in lower case, single blanks, none at the
+/// ends.
+std::string agent_key(const std::string& agent);
 
 /// One line of the drug log.
 struct Event {

@@ -100,7 +100,9 @@ Done write_whole_file(const std::string& path, const std::string& content) {
     }
     written += static_cast<std::size_t>(step);
   }
-  if (::close(file) != 0 || ::rename(temporary.c_str(), path.c_str()) != 0) {
+  // After a power cut the old file or the new one is there, never an empty one.
+  const bool kept = ::fsync(file) == 0;
+  if (::close(file) != 0 || !kept || ::rename(temporary.c_str(), path.c_str()) != 0) {
     const Error error = system_error(path, "the file cannot be put in its place");
     ::unlink(temporary.c_str());
     return error;
