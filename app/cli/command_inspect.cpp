@@ -89,13 +89,27 @@ std::string recording_text(const recording::Recording& recording,
   return text;
 }
 
+/// The readers speak of the session's keys; on the command line the same is said with options.
+Error with_options(Error error) {
+  const std::pair<const char*, const char*> words[] = {{"recording.csv.rate_hz", "--rate-hz"},
+                                                       {"recording.csv.delimiter", "--delimiter"},
+                                                       {"recording.csv.decimal", "--decimal"},
+                                                       {"recording.csv.time_column", "--time-column"}};
+  for (const auto& [key, option] : words) {
+    const auto at = error.remedy.find(key);
+    if (at != std::string::npos)
+      error.remedy.replace(at, std::string(key).size(), option + std::string(" (in a session: ") + key + ")");
+  }
+  return error;
+}
+
 } // namespace
 
 int inspect(const InspectWords& words) {
   const auto settings = settings_of(words);
   if (!settings) return refuse(settings.error());
   auto read = intake::read_recording(words.recording, *settings);
-  if (!read) return refuse(read.error());
+  if (!read) return refuse(with_options(read.error()));
   const auto recording = std::make_shared<const recording::Recording>(std::move(read).value());
   for (const auto& warning : recording->warnings)
     report(warning);

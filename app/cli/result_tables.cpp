@@ -156,7 +156,8 @@ std::string session_text(const session::SessionResult& result) {
   if (!result.curves.empty()) text += "\n" + fits_text(result.curves);
   if (!result.warnings.empty())
     text += "\n" + std::to_string(result.warnings.size()) +
-            " warnings, listed on standard error and in summary.json\n";
+            (result.warnings.size() == 1 ? " warning" : " warnings") +
+            ", on standard error and in summary.json\n";
   return text + "\n";
 }
 

@@ -2,6 +2,7 @@
 #include "session/inspection.h"
 
 #include <algorithm>
+#include <cmath>
 #include <optional>
 
 #include "activation/compute.h"
@@ -11,6 +12,26 @@
 namespace chronodrome::session {
 namespace {
 
+/// SD of white noise from differences of neighbours, robust against beats: median over up to 60 windows of
+/// one second that are spread evenly over the signal.
+double noise_of(const recording::Signal& signal) {
+  const auto window = static_cast<std::size_t>(std::max(16.0, signal.time_base.rate().value()));
+  const std::size_t size = signal.time_base.size();
+  if (size < window) return 0.0;
+  constexpr std::size_t kWindows = 60;
+  const std::size_t stride = std::max(window, size / kWindows);
+  std::vector<double> samples(window);
+  std::vector<double> steps(window - 1);
+  std::vector<double> noise;
+  for (std::size_t first = 0; first + window <= size; first += stride) {
+    signal.samples->read(first, samples);
+    for (std::size_t i = 0; i + 1 < window; ++i)
+      steps[i] = samples[i + 1] - samples[i];
+    noise.push_back(numerics::mad_sd(steps) / std::sqrt(2.0));
+  }
+  return numerics::median(noise);
+}
+
 SignalLook look_at(const recording::Signal& signal, const activation::ChannelActivations& found) {
   SignalLook look;
   if (signal.envelope && signal.time_base.size() > 0) {
@@ -18,13 +39,11 @@ SignalLook look_at(const recording::Signal& signal, const activation::ChannelAct
     look.min = range.min;
     look.max = range.max;
   }
-  std::vector<double> noise;
+  look.noise_sd = noise_of(signal);
   double clipped = 0.0;
   for (const auto& window : found.quality) {
-    if (window.unreadable_share < 0.5) noise.push_back(window.noise_sd);
     clipped += window.clipped_share * (window.span.end - window.span.start).value();
   }
-  if (!noise.empty()) look.noise_sd = numerics::median(noise);
   const double length = (signal.time_base.end() - signal.time_base.start()).value();
   for (const auto& gap : signal.time_base.gaps()) {
     ++look.gaps;

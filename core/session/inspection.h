@@ -14,7 +14,7 @@ namespace chronodrome::session {
 struct SignalLook {
   double min = 0.0; ///< over the whole signal, in its unit
   double max = 0.0;
-  double noise_sd = 0.0;            ///< median over windows of 10 s, robust
+  double noise_sd = 0.0;            ///< of white noise, from differences of neighbours
   double clipped_share = 0.0;       ///< 0 to 1
   double unreadable_share = 0.0;    ///< 0 to 1
   std::vector<std::string> reasons; ///< why stretches cannot be read, each once
