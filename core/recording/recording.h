@@ -58,6 +58,7 @@ struct Recording {
   std::vector<Signal> signals;
   std::vector<Annotation> annotations; ///< by onset
   std::vector<std::string> file_notes; ///< header lines that are not data
+  std::string convention;              ///< how a table was read: its encoding, delimiter, decimal mark, times
   std::vector<Warning> warnings;
   Seconds duration; ///< end of the last sample period of any signal
 
