@@ -20,6 +20,8 @@ struct WrittenSignal {
   double physical_min = 0.0;   ///< EDF scale; both 0: the range of the samples, rounded outwards
   double physical_max = 0.0;
   std::string prefilter;
+  int digital_min = -32768; ///< EDF: the converter's range
+  int digital_max = 32767;
 };
 
 struct WrittenAnnotation {
@@ -39,8 +41,13 @@ struct WrittenRecording {
 
 enum class EdfKind { plain, continuous, discontinuous };
 
-/// Writes EDF, EDF+C or EDF+D (Kemp & Olivan 2003). The last record is padded with the signal's last value.
-/// Errors: bad_usage (a label too long, a rate that does not fill whole records), cannot_write.
+/// Writes EDF, EDF+C or EDF+D. Values go to the nearest digital one and clip at the ends of the range. The
+/// last record is padded with the signal's last value; the annotation signal is as wide as the fullest record
+/// needs, so that none is lost. Without signals, an EDF+ file of annotations only. Errors: bad_usage (a label
+/// longer than 16 ASCII characters, a rate that does not fill whole records, a record duration that 8
+/// characters cannot hold, a value that is not a number, annotations in a plain EDF file), cannot_write.
+/// Source: Kemp et al. 1992, doi:10.1016/0013-4694(92)90009-7; Kemp & Olivan 2003,
+/// doi:10.1016/S1388-2457(03)00123-8.
 Done write_edf(const std::string& path, const WrittenRecording& recording, EdfKind kind);
 
 struct CsvLayout {
@@ -51,10 +58,13 @@ struct CsvLayout {
   bool units_row = false; ///< a second row with the units; otherwise "name (unit)" in the first
   int time_decimals = 4;
   int value_decimals = 4;
+  std::optional<std::string>
+      comment_column; ///< a last column with the annotations, each in the row at its onset
 };
 
-/// Writes a table, one row a sample. Requires: all signals have the same rate and length.
-/// Errors: bad_usage (different rates), cannot_write.
+/// Writes a table, one row a sample; rows inside `left_out` are not written. Requires: all signals have the
+/// same rate and length. Annotations are written only into a comment column. Errors: bad_usage (different
+/// rates or lengths, a delimiter that is the decimal mark), cannot_write.
 Done write_csv(const std::string& path, const WrittenRecording& recording, const CsvLayout& layout);
 
 } // namespace chronodrome::intake
