@@ -4,6 +4,7 @@
 #include <cstddef>
 #include <optional>
 #include <string>
+#include <string_view>
 #include <vector>
 
 #include "base/quantity.h"
@@ -20,7 +21,7 @@ struct CurvePoint {
 /// A number with its 95 % interval; a bound that the data do not give is missing.
 struct Estimate {
   std::optional<double> estimate, se, ci_low, ci_high;
-  std::string ci_method; ///< "profile", "wald" or empty
+  std::string ci_method; ///< "profile", "wald", "fixed" (not estimated) or empty (no interval)
 };
 
 struct NamedEstimate {
@@ -38,10 +39,20 @@ struct CurveFit {
   std::optional<double> residual_sd, rss, aicc;
   int df = 0;
   bool converged = false;
-  std::vector<std::string> flags; ///< of the closed list
-  std::string reason;             ///< one sentence for the first flag, if any
+  std::vector<std::string> flags;   ///< of the closed list
+  std::string reason;               ///< one sentence for the first flag, if any
+  std::vector<std::string> reasons; ///< one sentence for each flag, in the same order
 
+  std::optional<double> response_p;    ///< P of the F test against "no response" (model_comparison.h)
+  std::optional<double> trend_p;       ///< P of the linear trend of the response on the rank of concentration
+  std::optional<double> lack_of_fit_p; ///< where concentrations are repeated
+  std::optional<double> condition;     ///< of the derivatives with columns scaled to unit length
+  int iterations = 0;                  ///< accepted steps from the best start
+  std::size_t n_dropped = 0;           ///< points without a finite response, left out
+
+  /// The parameter or derived number of that name, or null.
   [[nodiscard]] const Estimate* find(const std::string& name) const;
+  [[nodiscard]] bool has_flag(std::string_view flag) const;
 };
 
 } // namespace chronodrome::pharmacology
