@@ -3,6 +3,7 @@
 #include <filesystem>
 #include <iostream>
 #include <map>
+#include <new>
 #include <thread>
 
 #include "base/parallel.h"
@@ -23,7 +24,9 @@ constexpr std::string_view kEnding = ".session.json";
 std::optional<std::string> name_of_session(const std::string& path) {
   const std::string file = fs::path(path).filename().string();
   if (file.size() <= kEnding.size() || !file.ends_with(kEnding)) return std::nullopt;
-  return file.substr(0, file.size() - kEnding.size());
+  const std::string name = file.substr(0, file.size() - kEnding.size());
+  // DIR/. and DIR/.. are other folders than the one that was asked for.
+  return name == "." || name == ".." ? std::nullopt : std::optional(name);
 }
 
 /// Names of all sessions, or the first reason not to start.
@@ -60,7 +63,7 @@ struct Outcome {
   std::string shown; ///< for standard output
 };
 
-Outcome analyse_one(const std::string& path, const std::string& folder, unsigned threads) {
+Outcome analyse_session(const std::string& path, const std::string& folder, unsigned threads) {
   Outcome outcome;
   session::LoadOptions options;
   options.threads = threads;
@@ -82,6 +85,24 @@ Outcome analyse_one(const std::string& path, const std::string& folder, unsigned
     return outcome;
   }
   outcome.shown = session_text(*result) + "files: " + folder + "/\n";
+  return outcome;
+}
+
+/// One session must not take the others with it, whatever goes wrong.
+Outcome analyse_one(const std::string& path, const std::string& folder, unsigned threads) {
+  Outcome outcome;
+  try {
+    return analyse_session(path, folder, threads);
+  } catch (const std::bad_alloc&) {
+    outcome.failure =
+        Error{ErrorCode::over_limit, path, {}, "out of memory", "analyse it alone, with --jobs 1"};
+  } catch (const std::exception& fault) {
+    outcome.failure = Error{ErrorCode::internal_fault,
+                            path,
+                            {},
+                            std::string("internal fault: ") + fault.what(),
+                            "please report it with the input file"};
+  }
   return outcome;
 }
 

@@ -134,6 +134,7 @@ ChannelActivations finish_mechanical(const ChannelScan& scan, const ActivationSe
       return u.span.start <= all[i].time && all[i].time < u.span.end;
     });
     if (lost) continue;
+    if (!result.marks.empty() && all[i].time <= result.marks.back().time) continue;
     Activation mark;
     mark.time = all[i].time;
     mark.sample = scan.twitch_samples[i];

@@ -84,7 +84,9 @@ public:
     for (std::size_t i = 0; i < rises.size(); ++i) {
       if (rises[i] < low || rises[i] >= high) continue;
       if ((block.flags[rises[i]] & conditioning::kUnreadable) != 0) continue;
-      twitches[i].rise_at = steepest[i];
+      // The neighbours may not carry the mark off the contraction's own upstroke.
+      if (steepest[i] >= twitches[i].foot_at && steepest[i] <= twitches[i].peak_at)
+        twitches[i].rise_at = steepest[i];
       keep(block, twitches[i], rises[i]);
     }
     meter_.look_at(block, [](std::size_t) { return true; });

@@ -23,6 +23,9 @@ struct DelayRow {
   std::optional<Seconds> delay; ///< to - from; negative for retrograde
   DelayState state = DelayState::unpaired;
   bool ambiguous = false; ///< the times alone do not say which `from` caused this `to`
+  /// Blocked only as far as one can see: an answer could lie where `to` cannot be read, or behind the end of
+  /// the recording. Such a row is no evidence of block.
+  bool answer_unseen = false;
 };
 
 /// Conduction from one electrode to another. Rows in order of their earliest time.

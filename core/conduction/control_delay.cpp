@@ -3,6 +3,7 @@
 #include <cmath>
 #include <vector>
 
+#include "conduction/dissociation.h"
 #include "conduction/pairing.h"
 #include "numerics/robust.h"
 
@@ -23,6 +24,8 @@ struct Cycle {
 
 std::vector<Cycle> cycles_of(const activation::ChannelActivations& from,
                              const activation::ChannelActivations& to, const DelayWindow& window) {
+  // A beat of either channel may lie where that cannot be read: what is left would pair with the wrong one.
+  const std::vector<recording::Span> unreadable = unreadable_of({&from, &to});
   std::vector<Cycle> cycles;
   std::size_t j = 0;
   for (std::size_t i = 0; i + 1 < from.marks.size(); ++i) {
@@ -37,7 +40,8 @@ std::vector<Cycle> cycles_of(const activation::ChannelActivations& from,
     if (end == j + 1) {
       cycle.delay = (to.marks[j].time - start).value();
       cycle.usable = cycle.delay >= window.shortest.value() && cycle.delay <= window.longest.value() &&
-                     cycle.delay < kWithinCycle * (next - start).value();
+                     cycle.delay < kWithinCycle * (next - start).value() &&
+                     !meets_any(unreadable, start.value(), next.value());
     }
     cycles.push_back(cycle);
   }

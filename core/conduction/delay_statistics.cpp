@@ -8,6 +8,11 @@
 #include "numerics/robust.h"
 
 namespace chronodrome::conduction {
+namespace {
+
+constexpr double kFewestIndependent = 1.5; // delays that count as independent, for an interval
+
+} // namespace
 
 DelayStatistics statistics_of(std::span<const double> delays) {
   DelayStatistics found;
@@ -23,7 +28,7 @@ DelayStatistics statistics_of(std::span<const double> delays) {
   if (delays.size() < 2) return found;
   found.sd = Seconds(numerics::sd(delays));
   found.sem = found.sd / std::sqrt(found.n_independent);
-  if (found.n_independent > 1.0)
+  if (found.n_independent > kFewestIndependent)
     found.half_width = numerics::student_t_quantile(0.975, found.n_independent - 1.0) * found.sem;
   return found;
 }

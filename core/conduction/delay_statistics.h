@@ -18,7 +18,8 @@ struct DelayStatistics {
   Seconds shortest, longest;
   Seconds sem;        ///< of the mean, corrected for the correlation of consecutive beats
   Seconds half_width; ///< of the 95 % interval of the mean, Student's t with n_independent - 1 degrees of
-                      ///< freedom; 0 where n_independent is not above 1
+                      ///< freedom; 0 (no interval) where n_independent is not above 1.5, for below half a
+                      ///< degree of freedom the quantile says nothing but that there is no interval
 };
 
 /// Statistics of `delays` (seconds, in order of time). All zero for none. The beats of one preparation are no

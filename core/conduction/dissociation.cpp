@@ -63,6 +63,26 @@ bool is_dissociated(std::span<const Phase> beats, const ConductionSettings& sett
 
 } // namespace
 
+std::vector<recording::Span>
+unreadable_of(std::initializer_list<const activation::ChannelActivations*> channels) {
+  std::vector<recording::Span> spans;
+  for (const auto* channel : channels) {
+    for (const auto& stretch : channel->unreadable)
+      spans.push_back(stretch.span);
+  }
+  std::sort(spans.begin(), spans.end(),
+            [](const recording::Span& x, const recording::Span& y) { return x.start < y.start; });
+  std::vector<recording::Span> joined;
+  for (const recording::Span& span : spans) {
+    if (!joined.empty() && span.start <= joined.back().end) {
+      joined.back().end = std::max(joined.back().end, span.end);
+    } else {
+      joined.push_back(span);
+    }
+  }
+  return joined;
+}
+
 bool meets_any(std::span<const recording::Span> stretches, double a, double b) {
   const auto stretch =
       std::partition_point(stretches.begin(), stretches.end(),

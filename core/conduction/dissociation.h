@@ -2,9 +2,11 @@
 #pragma once
 
 #include <cstddef>
+#include <initializer_list>
 #include <span>
 #include <vector>
 
+#include "activation/activation.h"
 #include "conduction/settings.h"
 #include "recording/time_base.h"
 
@@ -19,6 +21,10 @@ namespace chronodrome::conduction {
 std::vector<char> dissociated_beats(std::span<const double> from, std::span<const double> to,
                                     std::span<const recording::Span> unreadable,
                                     const ConductionSettings& settings);
+
+/// What any of these channels cannot read, in order, joined.
+std::vector<recording::Span>
+unreadable_of(std::initializer_list<const activation::ChannelActivations*> channels);
 
 /// True if any of the ordered, disjoint `stretches` meets the time between `a` and `b`.
 bool meets_any(std::span<const recording::Span> stretches, double a, double b);

@@ -22,32 +22,12 @@ std::vector<double> times_of(const activation::ChannelActivations& channel) {
   return times;
 }
 
-/// What either channel cannot read, in order, joined.
-std::vector<recording::Span> unreadable_of(const activation::ChannelActivations& a,
-                                           const activation::ChannelActivations& b) {
-  std::vector<recording::Span> spans;
-  for (const auto* channel : {&a, &b}) {
-    for (const auto& stretch : channel->unreadable)
-      spans.push_back(stretch.span);
-  }
-  std::sort(spans.begin(), spans.end(),
-            [](const recording::Span& x, const recording::Span& y) { return x.start < y.start; });
-  std::vector<recording::Span> joined;
-  for (const recording::Span& span : spans) {
-    if (!joined.empty() && span.start <= joined.back().end) {
-      joined.back().end = std::max(joined.back().end, span.end);
-    } else {
-      joined.push_back(span);
-    }
-  }
-  return joined;
-}
-
 class Pairing {
 public:
   Pairing(const Electrode& from, const Electrode& to, const ConductionSettings& settings)
       : from_(times_of(*from.activations)), to_(times_of(*to.activations)),
-        unreadable_(unreadable_of(*from.activations, *to.activations)), settings_(settings) {}
+        unreadable_(unreadable_of({from.activations, to.activations})),
+        to_unreadable_(unreadable_of({to.activations})), to_end_(to.end), settings_(settings) {}
 
   void within_chamber(PathwayDelays& result, Seconds reach) {
     // Both must choose each other: nearest neighbours in both directions.
@@ -98,6 +78,7 @@ public:
     undo_unlikely_retrograde(from_, to_, partner_);
     undo_dissociated(result);
     write_rows(result);
+    mark_unseen(result, window);
     mark_ambiguous(result, window, control);
   }
 
@@ -151,6 +132,15 @@ private:
                      [&](const DelayRow& a, const DelayRow& b) { return earliest(a) < earliest(b); });
   }
 
+  void mark_unseen(PathwayDelays& result, const DelayWindow& window) const {
+    for (DelayRow& row : result.rows) {
+      if (row.state != DelayState::blocked) continue;
+      const Seconds until = *row.from_time + window.longest;
+      row.answer_unseen =
+          (to_end_ && until > *to_end_) || meets_any(to_unreadable_, row.from_time->value(), until.value());
+    }
+  }
+
   /// Median cycle of `from` about its i-th activation.
   [[nodiscard]] double cycle_about(std::size_t i) const {
     std::vector<double> cycles;
@@ -186,7 +176,9 @@ private:
   }
 
   std::vector<double> from_, to_;
-  std::vector<recording::Span> unreadable_;
+  std::vector<recording::Span> unreadable_;    ///< of either
+  std::vector<recording::Span> to_unreadable_; ///< of `to` alone
+  std::optional<Seconds> to_end_;
   const ConductionSettings& settings_;
   std::vector<std::optional<std::size_t>> partner_;
 };

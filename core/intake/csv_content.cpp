@@ -86,6 +86,10 @@ private:
 
   std::optional<Error> judge_axis(double step) {
     const double rate = axis_.rate.value();
+    if (axis_.runs.size() > settings_.limits.runs)
+      return Error{ErrorCode::over_limit, path_, Place::at_line(layout_.data_line),
+                   "the times have more than " + std::to_string(settings_.limits.runs) + " gaps",
+                   "check the time column, or set recording.csv.time_column"};
     if (settings_.rate) {
       compare_rates(settings_.rate->value(), 1.0 / step, "the rate that is set");
     } else if (axis_.residual_max > axis_.quantum + 1.0 / rate) {

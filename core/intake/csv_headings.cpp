@@ -45,6 +45,8 @@ bool may_be_names(const HeadRecord& record, const HeadReading& reading) {
       std::count_if(texts.begin(), texts.end(), [](const std::string& text) { return !text.empty(); }));
   const auto numeric =
       static_cast<std::size_t>(std::count(reading.numeric.begin(), reading.numeric.end(), true));
+  // A table with an index begins its names with an empty one.
+  if (texts.front().empty() && texts.size() == reading.width && named + 1 == texts.size()) return true;
   // A line of one cell above a table of several columns is a title.
   return named >= numeric || (named > 1 && 2 * named > numeric);
 }

@@ -2,109 +2,15 @@
 #include "intake/csv_layout.h"
 
 #include <algorithm>
-#include <array>
-#include <cmath>
 #include <set>
 
-#include "base/number_text.h"
+#include "intake/csv_column_kinds.h"
 #include "intake/csv_headings.h"
 #include "intake/csv_text.h"
 #include "intake/units.h"
 
 namespace chronodrome::intake {
 namespace {
-
-bool is_one_of(const std::string& word, std::initializer_list<const char*> words) {
-  return std::any_of(words.begin(), words.end(), [&](const char* other) { return word == other; });
-}
-
-/// Words for time in the languages that exports come in (common practice).
-bool is_time_name(const std::string& name) {
-  const std::string word = lower_case(trimmed(name));
-  if (is_one_of(word, {"t",          "time",       "times",     "zeit",         "temps",      "tiempo",
-                       "tempo",      "tijd",       "tid",       "czas",         "cas",        "timestamp",
-                       "time stamp", "timestamps", "elapsed",   "elapsed time", "reltime",    "relative time",
-                       "seconds",    "sec",        "s",         "ms",           "msec",       "milliseconds",
-                       "clock",      "clock time", "date time", "datetime",     "time of day"}))
-    return true;
-  for (const char* start :
-       {"time ", "time_", "time/", "time,", "t_", "t/", "zeit_", "zeit/", "zeit ", "temps_"}) {
-    if (word.rfind(start, 0) == 0 && word.size() <= 16) return true;
-  }
-  return false;
-}
-
-bool is_counter_name(const std::string& name) {
-  return is_one_of(
-      lower_case(trimmed(name)),
-      {"sample",     "samples", "sample number", "sample no", "sample no.", "index", "idx", "row",
-       "row number", "no",      "no.",           "nr",        "nr.",        "n",     "#",   "point",
-       "points",     "scan",    "scans",         "count",     "record"});
-}
-
-/// Cells of one column in the data rows of the head.
-std::vector<Cell> cells_of(const HeadReading& reading, std::size_t column) {
-  std::vector<Cell> cells;
-  for (std::size_t r = reading.first_data; r < reading.records.size(); ++r) {
-    if (column < reading.records[r].cells.size()) cells.push_back(reading.records[r].cells[column]);
-  }
-  return cells;
-}
-
-ColumnKind kind_of_column(const HeadReading& reading, std::size_t column) {
-  std::size_t numbers = 0, clocks = 0, dates = 0, texts = 0;
-  for (std::size_t r = reading.first_data; r < reading.records.size(); ++r) {
-    const HeadRecord& record = reading.records[r];
-    if (column >= record.kinds.size()) continue;
-    switch (record.kinds[column]) {
-    case CellKind::number:
-    case CellKind::grouped:
-    case CellKind::grouped_fully:
-      ++numbers;
-      break;
-    case CellKind::clock:
-      ++clocks;
-      break;
-    case CellKind::text:
-      read_date(record.cells[column].text) ? ++dates : ++texts;
-      break;
-    case CellKind::empty:
-    case CellKind::missing:
-      break;
-    }
-  }
-  if (clocks > 0 && clocks >= numbers + texts) return ColumnKind::clock;
-  if (dates > numbers + texts) return ColumnKind::date;
-  if (column < reading.numeric.size() && reading.numeric[column]) return ColumnKind::number;
-  return numbers + texts + dates > 0 ? ColumnKind::text : ColumnKind::open;
-}
-
-std::vector<double> values_of(const HeadReading& reading, std::size_t column) {
-  std::vector<double> values;
-  for (const Cell& cell : cells_of(reading, column)) {
-    const NumberRead number = read_number(cell.text, reading.dialect.decimal);
-    if (number.form != NumberForm::none) values.push_back(number.value);
-  }
-  return values;
-}
-
-/// A column that rises by the same step all along: nobody's signal does.
-bool rises_evenly(const std::vector<double>& values) {
-  if (values.size() < 3) return false;
-  const double step = (values.back() - values.front()) / static_cast<double>(values.size() - 1);
-  for (std::size_t i = 1; i < values.size(); ++i) {
-    if (!(values[i] > values[i - 1]) || std::abs(values[i] - values[i - 1] - step) > 0.01 * step)
-      return false;
-  }
-  return true;
-}
-
-bool counts_rows(const std::vector<double>& values) {
-  for (std::size_t i = 1; i < values.size(); ++i) {
-    if (values[i] != values[i - 1] + 1.0) return false;
-  }
-  return values.size() > 1;
-}
 
 /// Building the layout in steps, with the texts for errors at hand.
 class LayoutFinder {
@@ -152,7 +58,7 @@ private:
       TableColumn column;
       column.kind = kind_of_column(reading_, c);
       const std::string text = c < headings_.names.size() ? headings_.names[c] : "";
-      if (text.empty() && !headings_.names.empty() && column.kind == ColumnKind::number)
+      if (c >= headings_.names.size() && !headings_.names.empty() && column.kind == ColumnKind::number)
         return Error{ErrorCode::wrong_format, path_, Place::at(heading_line(), c + 1),
                      "column " + std::to_string(c + 1) +
                          " holds numbers but has no name, so that names and columns "
@@ -223,25 +129,36 @@ private:
       }
     };
     const auto kind = [&](std::size_t c) { return layout_.columns[c].kind; };
-    first_of([&](std::size_t c) {
-      return kind(c) == ColumnKind::number && is_time_name(layout_.columns[c].source);
-    });
+    first_of([&](std::size_t c) { return kind(c) == ColumnKind::number && is_called_time(c); });
     first_of([&](std::size_t c) { return kind(c) == ColumnKind::clock; });
     layout_.time_column_told = layout_.time_column.has_value();
     const TableColumn& first = layout_.columns.front();
     const bool may_be_time = first.unit.empty() || seconds_in(first.unit);
-    if (!layout_.time_column && first.kind == ColumnKind::number && may_be_time &&
-        !is_counter_name(first.source) && rises_evenly(values_of(reading_, 0)))
+    if (!layout_.time_column && first.kind == ColumnKind::number && may_be_time && !is_counter(0) &&
+        rises_evenly(values_of(reading_, 0)))
       layout_.time_column = 0;
     set_counters_aside();
     return std::nullopt;
+  }
+
+  /// By its name, if its unit does not speak against it; "T" may be tension and must rise.
+  [[nodiscard]] bool is_called_time(std::size_t c) const {
+    const TableColumn& column = layout_.columns[c];
+    if (!is_time_name(column.source) || !(column.unit.empty() || seconds_in(column.unit))) return false;
+    return column.source.size() > 2 || seconds_in(column.unit) || never_falls(values_of(reading_, c));
+  }
+
+  /// A column of row numbers: by its name, or the one without a name that tables with an index begin with.
+  [[nodiscard]] bool is_counter(std::size_t c) const {
+    const bool unnamed = c == 0 && !headings_.names.empty() && headings_.names[0].empty();
+    return (unnamed || is_counter_name(layout_.columns[c].source)) && counts_rows(values_of(reading_, c));
   }
 
   void set_counters_aside() {
     for (std::size_t c = 0; c < layout_.columns.size(); ++c) {
       TableColumn& column = layout_.columns[c];
       if (c == layout_.time_column || column.kind != ColumnKind::number) continue;
-      if (is_counter_name(column.source) && counts_rows(values_of(reading_, c))) {
+      if (is_counter(c)) {
         column.kind = ColumnKind::counter;
         layout_.notes.push_back("column '" + column.source + "' counts the rows and is not read");
       } else if (layout_.time_column && (is_time_name(column.source) || seconds_in(column.unit)) &&

@@ -11,19 +11,11 @@
 #include "intake/clock_time.h"
 #include "intake/csv_cells.h"
 #include "intake/csv_clock.h"
+#include "intake/csv_column_kinds.h"
 #include "intake/csv_dialect.h"
 #include "intake/recording_reader.h"
 
 namespace chronodrome::intake {
-
-enum class ColumnKind {
-  number,  ///< samples, or times in a unit
-  clock,   ///< times of day
-  date,    ///< dates beside times of day: not read row by row
-  text,    ///< comments
-  open,    ///< empty so far: turns out to be comments, samples that begin late, or nothing
-  counter, ///< numbers of rows: not a signal
-};
 
 struct TableColumn {
   std::string source;            ///< without a bracketed unit

@@ -28,9 +28,10 @@ std::size_t behind_line_end(std::string_view text, std::size_t from, std::size_t
   return 0;
 }
 
-/// Pieces that begin with a row. Quotes may hide line ends, so that text with quotes stays in one piece.
-std::vector<std::string_view> pieces_of(std::string_view text, bool final) {
-  if (text.find('"') != std::string_view::npos) return {text};
+/// Pieces of whole rows. Quotes may hide line ends, so that text with quotes stays in one piece, whose last
+/// row may be cut.
+std::vector<std::string_view> pieces_of(std::string_view text, bool final, bool quoted) {
+  if (quoted) return {text};
   std::vector<std::string_view> pieces;
   std::size_t at = 0;
   while (text.size() - at > kChunkBytes) {
@@ -104,11 +105,11 @@ private:
 
   std::optional<Error> read_batch(TableMerge& merge, bool final, unsigned threads, std::size_t& consumed,
                                   std::optional<std::size_t>& open_quote) {
-    const std::vector<std::string_view> pieces = pieces_of(text_, final);
+    const bool quoted = text_.find('"') != std::string::npos;
+    const std::vector<std::string_view> pieces = pieces_of(text_, final, quoted);
     std::vector<RowBlock> blocks(pieces.size());
-    parallel_for(pieces.size(), threads, [&](std::size_t i) {
-      blocks[i] = read_rows(pieces[i], layout_, final && i + 1 == pieces.size());
-    });
+    parallel_for(pieces.size(), threads,
+                 [&](std::size_t i) { blocks[i] = read_rows(pieces[i], layout_, final || !quoted); });
     for (RowBlock& block : blocks) {
       consumed += block.bytes;
       open_quote = block.open_quote_line;

@@ -2,13 +2,12 @@
 #include "intake/csv_rows.h"
 
 #include <algorithm>
-#include <array>
 #include <cmath>
-#include <cstdint>
 #include <limits>
 #include <memory>
 
 #include "base/number_text.h"
+#include "intake/csv_quick_number.h"
 #include "intake/csv_text.h"
 
 namespace chronodrome::intake {
@@ -16,9 +15,6 @@ namespace {
 
 constexpr double kNoValue = std::numeric_limits<double>::quiet_NaN(); // inside this room only
 constexpr std::size_t kMostUneven = 100;
-constexpr std::array<double, 23> kPowersOfTen = {1e0,  1e1,  1e2,  1e3,  1e4,  1e5,  1e6,  1e7,
-                                                 1e8,  1e9,  1e10, 1e11, 1e12, 1e13, 1e14, 1e15,
-                                                 1e16, 1e17, 1e18, 1e19, 1e20, 1e21, 1e22};
 
 bool is_line_end(char c) {
   return c == '\n' || c == '\r';
@@ -80,42 +76,6 @@ private:
     block_.lines += lines;
   }
 
-  /// A plain number at `p`, up to the end of its cell. False: not so plain, or not a number.
-  bool quick_number(const char*& p, const char* end, double& value) const {
-    const char* const begin = p;
-    const bool negative = *p == '-';
-    if (negative || *p == '+') ++p;
-    std::uint64_t digits = 0;
-    const char* const first = p;
-    while (p < end && static_cast<unsigned char>(*p - '0') < 10)
-      digits = digits * 10 + static_cast<std::uint64_t>(*p++ - '0');
-    auto count = p - first;
-    std::ptrdiff_t decimals = 0;
-    if (p < end && *p == decimal_) {
-      const char* const behind = ++p;
-      while (p < end && static_cast<unsigned char>(*p - '0') < 10)
-        digits = digits * 10 + static_cast<std::uint64_t>(*p++ - '0');
-      decimals = p - behind;
-      count += decimals;
-    }
-    if (count == 0 || p == end) return false;
-    const bool cell_ends = *p == delimiter_ || is_line_end(*p) || is_blank(*p);
-    // Whole number and power of ten are both exact, so that their quotient is the nearest double (Clinger
-    // 1990, doi:10.1145/93542.93557).
-    if (cell_ends && count <= 18 && digits < (std::uint64_t{1} << 53U)) {
-      value = static_cast<double>(digits) / kPowersOfTen[static_cast<std::size_t>(decimals)];
-      if (negative) value = -value;
-      return true;
-    }
-    while (p < end && *p != delimiter_ && !is_line_end(*p) && !is_blank(*p))
-      ++p;
-    if (p == end) return false;
-    const auto number = parse_number({begin, static_cast<std::size_t>(p - begin)}, decimal_);
-    if (!number || std::abs(*number) > static_cast<double>(std::numeric_limits<float>::max())) return false;
-    value = *number;
-    return true;
-  }
-
   bool quick_text(const char*& p, const char* end, std::size_t c) {
     const char* const begin = p;
     while (p < end && *p != delimiter_ && !is_line_end(*p))
@@ -139,7 +99,7 @@ private:
       if (kinds_[c] == ColumnKind::number || kinds_[c] == ColumnKind::open) {
         if (*p == delimiter_ || is_line_end(*p)) {
           out[c] = kNoValue;
-        } else if (!quick_number(p, end, out[c])) {
+        } else if (!quick_number(p, end, delimiter_, decimal_, out[c])) {
           return false;
         }
       } else if (kinds_[c] == ColumnKind::clock || !quick_text(p, end, c)) {

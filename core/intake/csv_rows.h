@@ -55,7 +55,7 @@ struct RowBlock {
   std::optional<Error> error;                        ///< its line counts from 0 in the block
 };
 
-/// Rows of `text`, which begins with a record. `final`: the text ends where the file ends.
+/// Rows of `text`, which begins with a record. `final`: its last record is whole, or the file ends there.
 RowBlock read_rows(std::string_view text, const TableLayout& layout, bool final);
 
 } // namespace chronodrome::intake

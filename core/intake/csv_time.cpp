@@ -39,16 +39,25 @@ double noise_of(std::span<const double> stamps) {
   return 8.0 * std::numeric_limits<double>::epsilon() * largest;
 }
 
-/// Width of the band of stamps about a straight line from the first to the last.
-double band_about_line(std::span<const double> stamps) {
-  const double step = (stamps.back() - stamps.front()) / static_cast<double>(stamps.size() - 1);
-  double low = 0.0, high = 0.0;
-  for (std::size_t i = 0; i < stamps.size(); ++i) {
-    const double off = stamps[i] - stamps.front() - static_cast<double>(i) * step;
-    low = std::min(low, off);
-    high = std::max(high, off);
+/// Steps of 1, 1, 2, 1, 1, 2 ms: a rate that does not divide the rounding makes longer steps at even
+/// distances, one row apart at most. Lost samples come as they come.
+bool longer_steps_come_evenly(std::span<const double> stamps, double step, double quantum, double noise) {
+  const std::span<const double> looked = stamps.first(std::min(stamps.size(), kLooked));
+  std::vector<double> distances;
+  std::size_t last = 0;
+  for (std::size_t i = 1; i < looked.size(); ++i) {
+    const double longer = looked[i] - looked[i - 1] - step;
+    if (!(longer > (kGap - 1.0) * step + noise)) continue;
+    if (longer > 1.01 * quantum + noise) continue; // a gap, not rounding
+    if (last > 0) distances.push_back(static_cast<double>(i - last));
+    last = i;
   }
-  return high - low;
+  if (distances.size() < 2) return false;
+  std::vector<double> sorted = distances;
+  const double usual = median_of(sorted);
+  const auto even = std::count_if(distances.begin(), distances.end(),
+                                  [&](double distance) { return std::abs(distance - usual) <= 1.0; });
+  return 20 * even >= 19 * static_cast<std::ptrdiff_t>(distances.size()); // a true gap breaks one of them
 }
 
 struct Look {
@@ -206,10 +215,7 @@ std::optional<StepFound> find_step(std::span<const double> all, std::optional<do
   const Look look = look_at(steps, noise);
   const double quantum = printed.value_or(std::isfinite(look.smallest) ? look.smallest : 0.0);
   bool rounded = look.zeros > 0 || 100 * look.uneven > look.steps;
-  if (!rounded && look.jumps >= 3) {
-    // Steps of 1, 1, ... 2 ms at even distances come from a rate that does not divide the rounding.
-    rounded = band_about_line(stamps) <= 1.01 * quantum + noise;
-  }
+  if (!rounded && look.jumps > 0) rounded = longer_steps_come_evenly(stamps, look.median, quantum, noise);
   if (!rounded) return StepFound{look.median, 0.0};
   return StepFound{step_over_many(stamps, quantum), quantum};
 }

@@ -20,6 +20,12 @@ std::string_view without_brackets(std::string_view text) {
   return round || square ? trimmed(text.substr(1, text.size() - 2)) : text;
 }
 
+bool is_word_for_time(const std::string& name) {
+  const std::string word = lower_case(name);
+  return word == "t" || word == "time" || word == "zeit" || word == "temps" || word == "tiempo" ||
+         word == "tempo" || word == "elapsed";
+}
+
 } // namespace
 
 std::string normalised_unit(std::string_view text) {
@@ -140,7 +146,8 @@ Heading heading_of(std::string_view text) {
     // Only what can be nothing else: "A/V" and "lead_C" are names.
     const bool sure =
         heading.unit.size() > 1 && is_known_unit(heading.unit) && lower_case(heading.unit) != "n/a";
-    if ((sure && heading.unit.front() != '-') || heading.unit == "s" || heading.unit == "%") {
+    if ((sure && heading.unit.front() != '-') || heading.unit == "%" ||
+        (heading.unit == "s" && is_word_for_time(heading.name))) {
       // The mark belongs to the name that a session calls the column by.
       return {std::string(text), heading.unit};
     }

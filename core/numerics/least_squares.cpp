@@ -19,6 +19,8 @@ namespace {
 constexpr double kEpsilon = std::numeric_limits<double>::epsilon();
 constexpr double kNegligible = 1e-13; // of the largest singular value: the direction is undetermined
 
+constexpr double kAlmost = 1e-3; // an offset that rounding alone may keep from falling further
+
 /// The linear model at one point.
 struct Linearised {
   Vector s, b;
@@ -119,8 +121,8 @@ double promised_fall(const Linearised& linear, double lambda) {
 
 class Solver {
 public:
-  Solver(const Residuals& residuals, const LeastSquaresOptions& options, double exact_rss)
-      : residuals_(residuals), options_(options), exact_rss_(exact_rss) {}
+  Solver(const Residuals& residuals, const LeastSquaresOptions& options, double scale)
+      : residuals_(residuals), options_(options), scale_(scale), exact_rss_(options.exact_fraction * scale) {}
 
   LeastSquaresSummary solve(const Vector& start) {
     summary_.parameters = start;
@@ -177,8 +179,16 @@ private:
         const bool hidden = linear.rank == q.size() && relative(step_length(linear, 0.0)) < 1e-8;
         return why = hidden ? Termination::small_step : Termination::no_descent, true;
       }
+      if (linear.rank == q.size() && linear.offset < kAlmost && promised_fall(linear, lambda) < noise()) {
+        return why = Termination::small_step, true; // what is left to gain cannot be seen
+      }
     }
     return false;
+  }
+
+  /// How much a sum of squares of residuals errs that were each rounded like the data.
+  [[nodiscard]] double noise() const {
+    return 8.0 * kEpsilon * std::sqrt(std::max(scale_, state_.rss) * state_.rss);
   }
 
   /// A scaled step against the scaled parameters.
@@ -228,6 +238,7 @@ private:
 
   const Residuals& residuals_;
   const LeastSquaresOptions& options_;
+  double scale_; ///< sum of squares of the data, 0 if not known
   double exact_rss_;
   LeastSquaresSummary summary_;
   State state_, trial_;
@@ -257,8 +268,7 @@ Vector LeastSquaresSummary::standard_errors() const {
 
 LeastSquaresSummary solve_nonlinear(const Residuals& residuals, const Vector& start,
                                     const LeastSquaresOptions& options, std::optional<double> scale) {
-  const double exact_rss = scale ? options.exact_fraction * *scale : 0.0;
-  return Solver(residuals, options, exact_rss).solve(start);
+  return Solver(residuals, options, scale.value_or(0.0)).solve(start);
 }
 
 } // namespace chronodrome::numerics

@@ -47,12 +47,12 @@ struct LeastSquaresOptions {
 
 /// Why the solver stopped. r: residuals, Q: orthonormal basis of the Jacobian's columns.
 enum class Termination {
-  not_run,      ///< the default: nothing was solved
-  small_offset, ///< |Q'r| < relative_offset |r - QQ'r| (Bates & Watts 1981): converged
-  small_step,   ///< undamped relative step < 1e-10 with a relative fall of the RSS < 1e-14, or < 1e-8 where
-                ///< rounding hides any fall: converged
-  exact_data,   ///< RSS <= exact_fraction x sum of squares at zero model (`scale`): converged
-  singular,     ///< stationary, but the data do not determine every parameter: not converged
+  not_run,         ///< the default: nothing was solved
+  small_offset,    ///< |Q'r| < relative_offset |r - QQ'r| (Bates & Watts 1981): converged
+  small_step,      ///< undamped relative step < 1e-10 with a relative fall of the RSS < 1e-14; or an offset
+                   ///< below 1e-3 where rounding hides any further fall: converged
+  exact_data,      ///< RSS <= exact_fraction x sum of squares at zero model (`scale`): converged
+  singular,        ///< stationary, but the data do not determine every parameter: not converged
   iteration_limit, ///< not converged; the best point so far is kept
   no_descent,      ///< no step, however short, made the RSS fall: not converged
   undefined_start, ///< the model has no value at the start

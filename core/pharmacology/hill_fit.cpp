@@ -16,7 +16,7 @@ constexpr double kMostSlope = 10.0;
 
 /// One estimate under work: the parameter it belongs to and what the profile needs.
 struct Target {
-  HillParameter parameter;
+  HillParameter parameter = HillParameter::log_slope;
   std::optional<double> estimate, se; ///< on the scale of the profile (log10 EC50, ln nh)
   double guess = 1.0;                 ///< where and how far to look for the interval without an estimate
   double step = 1.0;
@@ -57,36 +57,24 @@ public:
 private:
   Target& target(HillParameter parameter) { return targets_[static_cast<std::size_t>(parameter)]; }
 
+  void begin(HillParameter parameter, double guess, double step, double end_low, double end_high) {
+    Target fresh;
+    fresh.parameter = parameter;
+    fresh.guess = guess;
+    fresh.step = step;
+    fresh.end_low = end_low;
+    fresh.end_high = end_high;
+    target(parameter) = fresh;
+  }
+
   void take_estimates() {
-    target(HillParameter::basal) = {
-        HillParameter::basal, {}, {}, levels_.mean.front(), levels_.range(), 1, limits_.basal(false),
-        limits_.basal(true),  {}, {}};
-    target(HillParameter::emax) = {
-        HillParameter::emax, {}, {}, levels_.mean.back(), levels_.range(), 1, limits_.emax(false),
-        limits_.emax(true),  {}, {}};
-    target(HillParameter::effect) = {HillParameter::effect,
-                                     {},
-                                     {},
-                                     levels_.mean.back() - levels_.mean.front(),
-                                     levels_.range(),
-                                     1,
-                                     limits_.effect(false),
-                                     limits_.effect(true),
-                                     {},
-                                     {}};
-    target(HillParameter::location) = {
-        HillParameter::location, {}, {}, levels_.highest_log(), 0.5, 1, limits_.location_down(),
-        limits_.location_up(),   {}, {}};
-    target(HillParameter::log_slope) = {HillParameter::log_slope,
-                                        {},
-                                        {},
-                                        0.0,
-                                        0.5,
-                                        1,
-                                        held_.nh ? 0.0 : limits_.slope_down(),
-                                        held_.nh ? 0.0 : limits_.slope_up(),
-                                        {},
-                                        {}};
+    const double first = levels_.mean.front(), last = levels_.mean.back(), range = levels_.range();
+    begin(HillParameter::basal, first, range, limits_.basal(false), limits_.basal(true));
+    begin(HillParameter::emax, last, range, limits_.emax(false), limits_.emax(true));
+    begin(HillParameter::effect, last - first, range, limits_.effect(false), limits_.effect(true));
+    begin(HillParameter::location, levels_.highest_log(), 0.5, limits_.location_down(),
+          limits_.location_up());
+    if (!held_.nh) begin(HillParameter::log_slope, 0.0, 0.5, limits_.slope_down(), limits_.slope_up());
     switch (optimum_.kind) {
     case HillOptimum::Kind::finite:
       return estimates_of_minimum();

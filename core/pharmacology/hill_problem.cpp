@@ -141,6 +141,7 @@ std::vector<double> location_nodes(const Levels& levels, double reach, double sp
 std::vector<double> slope_nodes(const HillConstraints& held) {
   if (held.nh) return {std::log(*held.nh)};
   std::vector<double> nodes;
+  nodes.reserve(kSlopes.size());
   for (const double nh : kSlopes)
     nodes.push_back(std::log(nh));
   return nodes;
@@ -210,11 +211,14 @@ double ConstrainedHill::follow(double held) {
   return with_limit(found.rss, held);
 }
 
-/// Beside a tested concentration the slope of the best curve at a held EC50 goes beyond all bounds; there
-/// the step takes its place.
+/// What the held fit becomes at the ends of its free parameters, where a descent creeps: a step (beside a
+/// tested concentration the slope of the best curve goes beyond all bounds) and one level for all doses.
 double ConstrainedHill::with_limit(double rss, double held) const {
-  if (parameter_ != HillParameter::location || held_.nh) return rss;
-  return std::min(rss, limits_.step_at(held));
+  if (held_.nh) return rss;
+  if (parameter_ == HillParameter::location) return std::min(rss, limits_.step_at(held));
+  if (parameter_ != HillParameter::basal) return rss;
+  const HillLimits limits(levels_, std::nullopt, held);
+  return std::min({rss, limits.rest(), limits.step().rss});
 }
 
 double ConstrainedHill::search(double held) {
@@ -224,7 +228,7 @@ double ConstrainedHill::search(double held) {
   const std::vector<double> slopes =
       parameter_ == HillParameter::log_slope ? std::vector<double>{held} : slope_nodes(held_);
   double best = followed;
-  for (const std::vector<double>& start : grid_starts(problem_, locations, slopes, 2)) {
+  for (const std::vector<double>& start : grid_starts(problem_, locations, slopes, 3)) {
     const SeparableMinimum found = problem_.descend(start, free_);
     if (found.rss < best) best = found.rss, theta_ = found.theta;
   }

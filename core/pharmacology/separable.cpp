@@ -180,7 +180,7 @@ SeparableMinimum SeparableProblem::descend(std::vector<double> start, std::span<
   std::vector<double> theta = std::move(start), trial;
   double lambda = 1e-4;
   int iteration = 0;
-  for (; iteration < 100 && q > 0; ++iteration) {
+  for (; iteration < 400 && q > 0; ++iteration) {
     if (!project(theta, true)) break;
     slopes(free, true);
     const double here = level_rss_;

@@ -53,19 +53,27 @@ void fit_richards(const Levels& levels, const FitOptions& options, CurveFit& fit
   if (!work.run(starts)) return;
   const SeparableMinimum& m = work.minimum();
   const double nh = std::exp(m.theta[1]), s = std::exp(m.theta[2]);
-  work.set("basal", m.coefficients[0], {1, 0, 0, 0, 0});
-  work.set("emax", m.coefficients[1], {0, 1, 0, 0, 0});
-  work.set("pec50", -m.theta[0], {0, 0, -1, 0, 0});
-  work.set("nh", nh, {0, 0, 0, nh, 0});
-  work.set("asymmetry", s, {0, 0, 0, 0, s});
-  work.set("effect_max", m.coefficients[1] - m.coefficients[0], {-1, 1, 0, 0, 0});
+  const bool asymmetry_is_free = free.size() == 3;
+  const auto gradient = [&](double by_basal, double by_emax, double by_location, double by_log_nh) {
+    std::vector<double> g{by_basal, by_emax, by_location, by_log_nh};
+    if (asymmetry_is_free) g.push_back(0.0);
+    return g;
+  };
+  work.set("basal", m.coefficients[0], gradient(1, 0, 0, 0));
+  work.set("emax", m.coefficients[1], gradient(0, 1, 0, 0));
+  work.set("pec50", -m.theta[0], gradient(0, 0, -1, 0));
+  work.set("nh", nh, gradient(0, 0, 0, nh));
+  work.set("effect_max", m.coefficients[1] - m.coefficients[0], gradient(-1, 1, 0, 0));
+  if (asymmetry_is_free) {
+    work.set("asymmetry", s, {0, 0, 0, 0, s});
+  } else {
+    work.set("asymmetry", {s, {}, {}, {}, "fixed"});
+  }
   work.set("ec50_mol_per_l", antilog(*fit.find("pec50")));
   // Steepest where z = ln s: L + (ln s + ln(2^(1/s) - 1)) / (nh ln 10).
   const double inflection =
       m.theta[0] + (m.theta[2] + std::log(std::expm1(std::numbers::ln2 / s))) / (nh * std::numbers::ln10);
-  Estimate at;
-  at.estimate = std::pow(10.0, inflection);
-  work.set("inflection_mol_per_l", at);
+  work.set("inflection_mol_per_l", antilog(wald(-inflection, std::nullopt, 0.0)));
 }
 
 void fit_biphasic(const Levels& levels, const FitOptions& options, CurveFit& fit) {
@@ -142,9 +150,7 @@ void fit_bell(const Levels& levels, const FitOptions& options, CurveFit& fit) {
                      effect_2 * logistic(nh_2 * std::numbers::ln10 * (x - m.theta[second])));
   };
   const numerics::Minimum top = numerics::minimise(height, m.theta[first], m.theta[second], 1e-9);
-  Estimate at;
-  at.estimate = std::pow(10.0, top.x);
-  work.set("extremum_mol_per_l", at);
+  work.set("extremum_mol_per_l", antilog(wald(-top.x, std::nullopt, 0.0)));
 }
 
 } // namespace chronodrome::pharmacology

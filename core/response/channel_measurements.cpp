@@ -24,7 +24,7 @@ std::vector<double> times_of(const activation::ChannelActivations& channel) {
 /// What the pathways that end in a chamber say about the rate of that chamber.
 struct Supply {
   std::string from;
-  std::vector<const conduction::DelayRow*> attempts; ///< rows with a `from`, by its time
+  std::vector<const conduction::DelayRow*> attempts; ///< by time of `from`
   std::vector<double> times;                         ///< of `from`
   std::vector<double> causeless;                     ///< times of activations that no conduction caused
 };
@@ -33,8 +33,9 @@ Supply supply_of(const conduction::PathwayDelays& pathway) {
   Supply supply;
   supply.from = pathway.from;
   for (const auto& row : pathway.rows) {
-    if (row.from_time) supply.attempts.push_back(&row);
-    if (row.to_time && row.state == conduction::DelayState::unpaired)
+    const bool is_retrograde = row.state == conduction::DelayState::retrograde;
+    if (row.from_time && !is_retrograde && !row.answer_unseen) supply.attempts.push_back(&row);
+    if (row.to_time && (is_retrograde || row.state == conduction::DelayState::unpaired))
       supply.causeless.push_back(row.to_time->value());
   }
   std::stable_sort(supply.attempts.begin(), supply.attempts.end(),
@@ -52,6 +53,8 @@ public:
     beats = times_of(*channel.activations);
     unreadable = unreadable_of(*channel.activations);
     excluded = exclusions_of(inputs, label_);
+    losses_ = unreadable;
+    losses_.insert(losses_.end(), excluded.begin(), excluded.end());
     beats_are_counted = true;
     intervals_ = rhythm::intervals_of(*channel.activations, excluded, {});
     for (const auto& pathway : inputs.pathways) {
@@ -66,10 +69,9 @@ public:
       if (!meets(excluded, Seconds(beat), Seconds(beat))) ++reading.n_beats;
     }
     const std::vector<double> lengths = whole_intervals(span);
-    const Seconds readable = span.end - span.start - covered(merged_losses(), span.start, span.end);
     if (reading.n_beats == 0) {
       reading.absence = Reading::Absence::no_beat;
-      if (readable.value() > 0.0) set_limit(reading, 60.0 / readable.value());
+      limit_by_silence(reading, span);
     } else if (lengths.empty()) {
       reading.absence = Reading::Absence::one_beat;
       if (reading.n_beats == 1) limit_by_silence(reading, span);
@@ -99,25 +101,22 @@ private:
     return lengths;
   }
 
-  [[nodiscard]] std::vector<Span> merged_losses() const {
-    std::vector<Span> losses = unreadable;
-    losses.insert(losses.end(), excluded.begin(), excluded.end());
-    return merged(std::move(losses));
-  }
-
-  /// A single beat: each silence beside it is shorter than the interval that it is part of.
+  /// No beat, or a single one: a silence is shorter than the interval that it is part of. What is lost ends
+  /// it, for a beat may lie there.
   void limit_by_silence(Reading& reading, const Span& span) const {
-    const double beat = within(beats, span).front();
-    const auto losses = merged_losses();
-    const auto silence = [&](Seconds from, Seconds to) {
-      return (to - from - covered(losses, from, to)).value();
-    };
-    const double longest = std::max(silence(span.start, Seconds(beat)), silence(Seconds(beat), span.end));
-    if (longest > 0.0) set_limit(reading, 60.0 / longest);
-  }
-
-  static void set_limit(Reading& reading, double limit) {
-    reading.limit = limit;
+    std::vector<Span> ends = losses_;
+    for (const double beat : within(beats, span))
+      ends.push_back({Seconds(beat), Seconds(beat)});
+    ends.push_back({span.end, span.end});
+    std::sort(ends.begin(), ends.end(), [](const Span& a, const Span& b) { return a.start < b.start; });
+    Seconds longest;
+    Seconds from = span.start;
+    for (const Span& end : ends) {
+      longest = std::max(longest, std::min(end.start, span.end) - from);
+      from = std::max(from, end.end);
+    }
+    if (longest.value() <= 0.0) return;
+    reading.limit = 60.0 / longest.value();
     reading.limit_side = "at_most";
   }
 
@@ -140,6 +139,7 @@ private:
 
   std::string label_;
   std::vector<rhythm::Interval> intervals_;
+  std::vector<Span> losses_; ///< unreadable and excluded
   std::vector<Supply> supplies_;
 };
 

@@ -15,7 +15,7 @@ namespace chronodrome::response {
 /// What one measure is over one stretch of time.
 struct Reading {
   /// Why there is no value.
-  enum class Absence { none, no_beat, blocked, one_beat, no_samples };
+  enum class Absence { none, no_beat, blocked, one_beat, no_samples, untested };
   Absence absence = Absence::none;
   std::optional<double> value, sem; ///< no sem from fewer than two readings
   std::size_t n_beats = 0;

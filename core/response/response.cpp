@@ -59,21 +59,19 @@ public:
   }
 
 private:
-  /// Sets the status of a window that is mostly excluded or unreadable; flags a lesser part.
+  /// Sets the status of a window that is mostly excluded or unreadable, taken together; flags any part.
   bool is_lost(const Span& span, Response& row) const {
     const double length = (span.end - span.start).value();
     const double out = covered(measurement_.excluded, span.start, span.end).value() / length;
     const double bad = covered(measurement_.unreadable, span.start, span.end).value() / length;
+    std::vector<Span> losses = measurement_.excluded;
+    losses.insert(losses.end(), measurement_.unreadable.begin(), measurement_.unreadable.end());
+    const double lost = covered(merged(std::move(losses)), span.start, span.end).value() / length;
     const auto percent = [](double share) { return number_text(100.0 * share, 3) + " % of the window "; };
     if (out > 0.0) row.flags.push_back(percent(out) + "is excluded");
     if (bad > 0.0) row.flags.push_back(percent(bad) + "cannot be read");
-    if (out > settings_.most_lost) {
-      row.status = Status::excluded;
-    } else if (bad > settings_.most_lost) {
-      row.status = Status::unreadable;
-    } else {
-      return false;
-    }
+    if (lost <= settings_.most_lost) return false;
+    row.status = out > bad ? Status::excluded : Status::unreadable;
     return true;
   }
 
@@ -96,6 +94,7 @@ private:
       row.status = Status::censored;
       return;
     case Reading::Absence::no_samples:
+    case Reading::Absence::untested:
       row.status = Status::unreadable;
       return;
     case Reading::Absence::none:

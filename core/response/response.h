@@ -84,11 +84,11 @@ struct Settings {
   double steady_tolerance = 0.01;   ///< change between windows that counts as none, as a share of the value
   double steady_range_share = 0.02; ///< ... as a share of the curve's response range so far
   double steady_standard_errors = 2.0;  ///< ... in standard errors of the difference
-  double most_lost = 0.5;               ///< share of a window that may be unreadable, or excluded
+  double most_lost = 0.5;               ///< share of a window that may be unreadable or excluded, together
   Seconds silence{5.0};                 ///< at either end of a window, without a beat, that is said
   double silence_cycles = 6.0;          ///< ... and at least this many cycles
   std::size_t complete_block_beats = 5; ///< beats unconducted in a row that are complete block
-  Seconds complete_block_time{2.0};     ///< ... or that long
+  Seconds complete_block_time{2.0};     ///< ... or at least two of them that last longer than this
 
   /// Error: bad_usage, naming the setting and its range.
   [[nodiscard]] std::optional<Error> check() const;
@@ -104,21 +104,34 @@ struct Settings {
 /// - `rate`, bpm: 60 times the number of intervals over their sum, which is 60 (N - 1)/(t_N - t_1) where all
 /// N
 ///   activations count; intervals that cross an unreadable or excluded stretch do not (N).
-/// - `delay`, ms: median over conducted beats (their number). `velocity`, m/s: distance over that median, the
-///   apparent velocity along the line between the electrodes.
-/// - `conducted`, 1: conducted activations of `from` over all of `from` (all).
+/// - `delay`, ms: median over conducted beats (their number). `velocity`, m/s: distance over the absolute
+/// value
+///   of that median, the apparent velocity along the line between the electrodes; positive whichever of them
+///   leads.
+/// - `conducted`, 1: conducted activations of `from` over all attempts (all). An attempt is an activation of
+///   `from` that could conduct and whose answer could be seen: rows with `answer_unseen` and retrograde ones
+///   are none.
 /// - `force`, `pressure`: median of the developed value; `dpdt_max`: median of the steepest rise (beats).
 /// - `flow`: mean (0).
 /// sem: of the mean with the lag-1 correction of numerics::sem_of_correlated; for the rate carried over from
 /// the intervals' mean by the delta method; for medians times sqrt(pi / 2), which holds for normal scatter;
 /// for the velocity carried over from the delay.
 ///
-/// Status: `excluded` or `unreadable` where more than `most_lost` of the window is; `arrested` without a beat
-/// (limit for the rate: at_most 60/T, T the window's readable time); `censored` for delay and velocity where
-/// complete block holds most of the window's beats (limit: the longest conducted delay of the whole
-/// recording, a convention) and for the rate with a single beat; `not_steady` where the last three equal
-/// windows still drift (plateau.h) or a silence ends or begins the window; otherwise `ok`. Whatever else
-/// weakens a value stands in its flags, in words.
+/// Status: `excluded` or `unreadable` where both together take more than `most_lost` of the window (the name
+/// of the larger part); `unreadable` also for a pathway without an attempt whose channels beat, and for a
+/// delay of none conducted out of too few attempts to say block; `arrested` without a beat (limit for the
+/// rate: at_most 60/T, T the longest silence of the window that nothing lost breaks, for a beat may lie in a
+/// hole); `censored` for delay and velocity where complete block holds most of the window's attempts (limit:
+/// the longest conducted delay of the whole recording, a convention) and for the rate with a single beat (T
+/// as before); `not_steady` where the last three equal windows still drift (plateau.h) or a silence ends or
+/// begins the window; otherwise `ok`. Whatever else weakens a value stands in its flags, in words; the flag
+/// of a delay or velocity read from a window in which some attempts failed begins with "conducted beats
+/// only".
+///
+/// Complete block: `complete_block_beats` blocked attempts in a row, or at least two whose time from the
+/// first to the last, with one running cycle of `from` (or less, if the next activation or the end of the
+/// window comes first), exceeds `complete_block_time`. Only neighbours stand in a row: an activation of
+/// `from` that is no attempt ends it.
 ///
 /// Requires: plan and every pointer set; marks, rows and stretches in order of time.
 /// Errors: bad_usage (settings; a measure that names no channel, pathway or flow series of the inputs).

@@ -1,6 +1,8 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "results/csv_text.h"
 
+#include <cmath>
+
 #include "base/number_text.h"
 
 namespace chronodrome::results {

@@ -19,7 +19,7 @@ public:
   explicit CsvTable(std::string_view header) : text_(header) { text_ += '\n'; }
 
   CsvTable& text(std::string_view value) { return raw(text_cell(value)); }
-  CsvTable& number(double value);
+  CsvTable& number(double value);                ///< empty if not finite
   CsvTable& number(std::optional<double> value); ///< empty if missing
   CsvTable& time(Seconds value) { return number(value.value()); }
   CsvTable& time(std::optional<Seconds> value);

@@ -43,6 +43,23 @@ bool is_left_over(const std::string& name) {
          is_result_file(name.substr(0, name.size() - kTemporary.size()));
 }
 
+/// What a folder holds, by name.
+Result<std::vector<fs::path>> entries_of(const fs::path& folder) {
+  std::vector<fs::path> entries;
+  std::error_code failed;
+  for (fs::directory_iterator at(folder, failed), end; !failed && at != end; at.increment(failed))
+    entries.push_back(at->path());
+  if (failed) {
+    return Error{ErrorCode::cannot_write,
+                 folder.string(),
+                 {},
+                 "the output folder cannot be read: " + failed.message(),
+                 "choose another folder for --out"};
+  }
+  std::sort(entries.begin(), entries.end());
+  return entries;
+}
+
 } // namespace
 
 std::span<const std::string> result_file_names() {
@@ -63,29 +80,34 @@ Done check_output_folder(const std::string& folder, std::span<const std::string>
                  "the output is to go into a folder, and this is a file",
                  "choose another name for --out"};
   }
-  for (const auto& entry : fs::directory_iterator(folder, failed)) {
-    if (!entry.is_directory(failed)) return not_ours(entry.path());
+  auto entries = entries_of(folder);
+  if (!entries) return entries.error();
+  for (const auto& entry : *entries) {
+    if (!fs::is_directory(entry, failed)) return not_ours(entry);
   }
   for (const auto& name : names) {
     const fs::path inner = fs::path(folder) / name;
     if (!fs::exists(inner, failed)) continue;
-    for (const auto& entry : fs::directory_iterator(inner, failed)) {
-      const std::string file = entry.path().filename().string();
-      if (entry.is_directory(failed) || !(is_result_file(file) || is_left_over(file)))
-        return not_ours(entry.path());
+    entries = entries_of(inner);
+    if (!entries) return entries.error();
+    for (const auto& entry : *entries) {
+      const std::string file = entry.filename().string();
+      if (fs::is_directory(entry, failed) || !(is_result_file(file) || is_left_over(file)))
+        return not_ours(entry);
     }
   }
-  if (failed)
-    return Error{ErrorCode::cannot_write,
-                 folder,
-                 {},
-                 "the output folder cannot be read: " + failed.message(),
-                 "choose another folder for --out"};
   return done();
 }
 
-Done write_whole_file(const std::string& path, const std::string& content) {
-  const std::string temporary = path + std::string(kTemporary);
+namespace {
+
+std::string part_of(const std::string& path) {
+  return path + std::string(kTemporary);
+}
+
+/// Writes the content under the temporary name, down to the disk.
+Done write_part(const std::string& path, const std::string& content) {
+  const std::string temporary = part_of(path);
   const int file = ::open(temporary.c_str(), O_WRONLY | O_CREAT | O_TRUNC | O_CLOEXEC, 0644);
   if (file < 0) return system_error(path, "the file cannot be written");
   std::size_t written = 0;
@@ -102,12 +124,24 @@ Done write_whole_file(const std::string& path, const std::string& content) {
   }
   // After a power cut the old file or the new one is there, never an empty one.
   const bool kept = ::fsync(file) == 0;
-  if (::close(file) != 0 || !kept || ::rename(temporary.c_str(), path.c_str()) != 0) {
-    const Error error = system_error(path, "the file cannot be put in its place");
-    ::unlink(temporary.c_str());
-    return error;
-  }
-  return done();
+  if (::close(file) == 0 && kept) return done();
+  const Error error = system_error(path, "the file cannot be written");
+  ::unlink(temporary.c_str());
+  return error;
+}
+
+Done put_in_place(const std::string& path) {
+  if (::rename(part_of(path).c_str(), path.c_str()) == 0) return done();
+  const Error error = system_error(path, "the file cannot be put in its place");
+  ::unlink(part_of(path).c_str());
+  return error;
+}
+
+} // namespace
+
+Done write_whole_file(const std::string& path, const std::string& content) {
+  if (Done written = write_part(path, content); !written) return written;
+  return put_in_place(path);
 }
 
 Done write_output_folder(const std::string& folder, std::span<const OutputFile> files) {
@@ -120,16 +154,23 @@ Done write_output_folder(const std::string& folder, std::span<const OutputFile> 
                  "the output folder cannot be made: " + failed.message(),
                  "choose another folder for --out"};
   }
-  for (const auto& file : files) {
-    if (const Done written = write_whole_file((fs::path(folder) / file.name).string(), file.content);
-        !written) {
-      return written.error();
+  const auto path_of = [&](const std::string& name) { return (fs::path(folder) / name).string(); };
+  // All new files are on the disk before the first old one goes: a full disk leaves the old results whole.
+  for (std::size_t i = 0; i < files.size(); ++i) {
+    if (Done written = write_part(path_of(files[i].name), files[i].content); !written) {
+      for (std::size_t k = 0; k < i; ++k)
+        fs::remove(part_of(path_of(files[k].name)), failed);
+      return written;
     }
+  }
+  for (const auto& file : files) {
+    if (Done placed = put_in_place(path_of(file.name)); !placed) return placed;
   }
   for (const auto& name : result_file_names()) {
     const bool made =
         std::any_of(files.begin(), files.end(), [&](const auto& file) { return file.name == name; });
-    if (!made) fs::remove(fs::path(folder) / name, failed);
+    if (!made) fs::remove(path_of(name), failed);
+    fs::remove(part_of(path_of(name)), failed); // of a run that was killed
   }
   return done();
 }

@@ -46,7 +46,12 @@ void write_settings(JsonText& json, const SessionResult& result) {
   json.close_list();
 }
 
+std::optional<double> unless_zero(double value) {
+  return value == 0.0 ? std::nullopt : std::optional(value);
+}
+
 void write_channels(JsonText& json, const SessionResult& result) {
+  const double low_confidence = std::get<double>(result.settings.at("intervals.low_confidence"));
   json.open_list("channels");
   for (std::size_t i = 0; i < result.channels.size(); ++i) {
     const auto& channel = result.channels[i];
@@ -55,8 +60,9 @@ void write_channels(JsonText& json, const SessionResult& result) {
     for (const auto& bad : found.unreadable)
       unreadable += (bad.span.end - bad.span.start).value();
     std::size_t low = 0;
-    for (const auto& mark : found.marks)
-      low += mark.confidence < 0.5 ? 1 : 0;
+    for (const auto& mark : found.marks) {
+      if (mark.confidence < low_confidence) ++low;
+    }
     json.open_object().text("label", channel.label).text("source", channel.raw().source_as_written);
     json.text("role", recording::name_of(channel.role)).text("unit", channel.unit);
     json.number("rate_hz", channel.time_base().rate().value()).count("samples", channel.time_base().size());
@@ -64,8 +70,9 @@ void write_channels(JsonText& json, const SessionResult& result) {
     json.count("activations", found.marks.size()).count("low_confidence", low);
     json.count("added", result.corrections[i].added).count("removed", result.corrections[i].removed);
     json.count("moved", result.corrections[i].moved).number("unreadable_s", unreadable);
-    json.number("timing_sd_ms", in_milliseconds(found.timing_sd))
-        .number("mains_hz", found.mains_hz)
+    json.number("timing_sd_ms",
+                found.marks.empty() ? std::nullopt : std::optional(in_milliseconds(found.timing_sd)))
+        .number("mains_hz", unless_zero(found.mains_hz))
         .close_object();
   }
   json.close_list();
@@ -76,17 +83,21 @@ void write_pathways(JsonText& json, const SessionResult& result) {
   for (const auto& pathway : result.pathways) {
     std::array<std::size_t, 4> states{};
     std::size_t ambiguous = 0;
+    std::size_t unseen = 0;
     for (const auto& row : pathway.rows) {
       ++states[static_cast<std::size_t>(row.state)];
-      ambiguous += row.ambiguous ? 1 : 0;
+      if (row.ambiguous) ++ambiguous;
+      if (row.answer_unseen) ++unseen;
     }
     json.open_object().text("label", pathway.pathway).text("from", pathway.from).text("to", pathway.to);
-    json.number("control_delay_ms", in_milliseconds(pathway.control_delay));
+    const bool conducted = states[static_cast<std::size_t>(conduction::DelayState::conducted)] > 0;
+    json.number("control_delay_ms",
+                conducted ? std::optional(in_milliseconds(pathway.control_delay)) : std::nullopt);
     for (const auto state : {conduction::DelayState::conducted, conduction::DelayState::blocked,
                              conduction::DelayState::retrograde, conduction::DelayState::unpaired}) {
       json.count(conduction::name_of(state), states[static_cast<std::size_t>(state)]);
     }
-    json.count("ambiguous", ambiguous).close_object();
+    json.count("ambiguous", ambiguous).count("blocked_unseen", unseen).close_object();
   }
   json.close_list();
 }

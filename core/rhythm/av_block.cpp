@@ -14,16 +14,23 @@ namespace {
 struct AtrialBeat {
   Seconds time;
   std::optional<Seconds> delay;
-  bool ambiguous = false;
+  bool after_break = false; ///< what the beats before it did says nothing of this one
 };
 
+/// The beats whose fate is known. Where the answer cannot be seen, or the impulse came from the ventricle,
+/// the sequence is broken: no group reaches across.
 std::vector<AtrialBeat> atrial_beats(const conduction::PathwayDelays& av) {
   std::vector<AtrialBeat> beats;
+  bool broken = true;
   for (const auto& row : av.rows) {
-    if (!row.from_time || row.state == conduction::DelayState::retrograde) continue;
-    beats.push_back({*row.from_time,
-                     row.state == conduction::DelayState::conducted ? row.delay : std::nullopt,
-                     row.ambiguous});
+    if (!row.from_time) continue;
+    if (row.state == conduction::DelayState::retrograde || row.answer_unseen) {
+      broken = true;
+      continue;
+    }
+    const bool conducted = row.state == conduction::DelayState::conducted;
+    beats.push_back({*row.from_time, conducted ? row.delay : std::nullopt, broken});
+    broken = false;
   }
   return beats;
 }
@@ -54,9 +61,10 @@ std::vector<Group> groups_of(const std::vector<AtrialBeat>& beats, std::size_t l
   std::size_t i = 0;
   while (i < beats.size()) {
     Group group{i, 0, 0};
-    while (i < beats.size() && beats[i].delay)
+    const auto goes_on = [&] { return i < beats.size() && (i == group.first || !beats[i].after_break); };
+    while (goes_on() && beats[i].delay)
       ++i, ++group.conducted;
-    while (i < beats.size() && !beats[i].delay)
+    while (goes_on() && !beats[i].delay)
       ++i, ++group.blocked;
     groups.push_back(trimmed(group, beats, longest));
   }
@@ -90,37 +98,58 @@ public:
 
 private:
   [[nodiscard]] Seconds start_of(const Group& group) const { return beats_[group.first].time; }
-  [[nodiscard]] Seconds end_of(std::size_t g) const {
+  /// The first conducted beat after the block, if nothing breaks the sequence before it.
+  [[nodiscard]] const AtrialBeat* beat_after(std::size_t g) const {
     const std::size_t after = groups_[g].first + groups_[g].size();
-    return after < beats_.size() ? beats_[after].time : end_;
+    return after < beats_.size() && !beats_[after].after_break ? &beats_[after] : nullptr;
+  }
+
+  /// The next atrial beat; one running cycle after the last blocked one where that is not seen or comes late.
+  [[nodiscard]] Seconds end_of(std::size_t g) const {
+    const std::size_t last = groups_[g].first + groups_[g].size() - 1;
+    const Seconds cycle = running_cycle(last);
+    const AtrialBeat* next = beat_after(g);
+    const bool in_time = next != nullptr && next->time - beats_[last].time <= settings_.pause_ratio * cycle;
+    return in_time ? next->time : std::min(end_, beats_[last].time + cycle);
+  }
+
+  /// Median of the atrial intervals up to beat `last`, across no break.
+  [[nodiscard]] Seconds running_cycle(std::size_t last) const {
+    std::vector<double> cycles;
+    for (std::size_t i = last; i > 0 && !beats_[i].after_break && cycles.size() < settings_.running_beats;
+         --i)
+      cycles.push_back((beats_[i].time - beats_[i - 1].time).value());
+    return Seconds(cycles.empty() ? 0.0 : numerics::median(cycles));
   }
 
   /// What the group shows, as the word of the rhythm table and n:m; empty where nothing is blocked.
   [[nodiscard]] std::string pattern_of(std::size_t g) const {
     const Group& group = groups_[g];
     if (group.blocked == 0) return {};
-    const Seconds silent = end_of(g) - beats_[group.first + group.conducted].time;
-    if (group.blocked >= settings_.complete_block_beats || silent > settings_.complete_block_time)
-      return "complete_av_block";
+    const Seconds unanswered = end_of(g) - beats_[group.first + group.conducted].time;
+    const bool for_long = group.blocked >= 2 && unanswered > settings_.complete_block_time;
+    if (group.blocked >= settings_.complete_block_beats || for_long) return "complete_av_block";
     if (group.blocked >= 2) return "high_degree_av_block";
     if (group.conducted == 0) return "undetermined";
     if (group.conducted == 1) return "two_to_one";
     const auto next = next_delay(g);
     const std::string ratio = " " + std::to_string(group.size()) + ":" + std::to_string(group.conducted);
     if (!next) return "undetermined" + ratio;
-    const Seconds last = *beats_[group.first + group.conducted - 1].delay;
-    return (last - *next > settings_.timing_tolerance ? "wenckebach" : "second_degree_fixed") + ratio;
+    const Seconds shortening = *beats_[group.first + group.conducted - 1].delay - *next;
+    if (shortening > settings_.timing_tolerance) return "wenckebach" + ratio;
+    return (shortening < -settings_.timing_tolerance ? "undetermined" : "second_degree_fixed") + ratio;
   }
 
   /// Delay of the first conducted beat after the block.
   [[nodiscard]] std::optional<Seconds> next_delay(std::size_t g) const {
-    const std::size_t after = groups_[g].first + groups_[g].size();
-    return after < beats_.size() ? beats_[after].delay : std::nullopt;
+    const AtrialBeat* next = beat_after(g);
+    return next != nullptr ? next->delay : std::nullopt;
   }
 
   /// True if the group follows the one before it without a 1:1 run between.
   [[nodiscard]] bool adjoins(std::size_t g) const {
-    return g > 0 && groups_[g - 1].first + groups_[g - 1].size() == groups_[g].first;
+    return g > 0 && groups_[g - 1].first + groups_[g - 1].size() == groups_[g].first &&
+           !beats_[groups_[g].first].after_break;
   }
 
   void open(std::size_t g, const std::string& pattern) {
@@ -133,16 +162,16 @@ private:
     counts_ = {1, group.size(), group.conducted};
     first_of_episode_ = g;
     found_.push_back(episode);
-    write_numbers(g);
+    write_numbers();
   }
 
   void extend(std::size_t g) {
     found_.back().end = end_of(g);
     counts_ = {counts_[0] + 1, counts_[1] + groups_[g].size(), counts_[2] + groups_[g].conducted};
-    write_numbers(g);
+    write_numbers();
   }
 
-  void write_numbers(std::size_t g) {
+  void write_numbers() {
     Episode& episode = found_.back();
     episode.detail = episode.detail.substr(0, episode.detail.find("groups="));
     episode.detail += "groups=" + std::to_string(counts_[0]) + ";atrial_beats=" + std::to_string(counts_[1]) +
@@ -160,7 +189,7 @@ private:
       episode.detail += ";increments_ms=";
       for (std::size_t i = 0; i < increments.size(); ++i)
         episode.detail += (i ? " " : "") + fixed_text(increments[i], 2);
-      if (const auto next = next_delay(g)) {
+      if (const auto next = next_delay(first_of_episode_)) {
         episode.detail += ";delay_after_block_ms=" + fixed_text(in_milliseconds(*next), 2);
       }
     }

@@ -38,6 +38,17 @@ std::string name_of(IntervalFlag flag) {
   return "";
 }
 
+std::optional<Error> IntervalSettings::check() const {
+  const auto wrong = [](const char* what, const char* remedy) {
+    return Error{ErrorCode::bad_usage, "", {}, what, remedy};
+  };
+  if (!(premature_ratio > 0.0 && premature_ratio < 1.0))
+    return wrong("intervals.premature_ratio must lie between 0 and 1", "leave it out for 0.85");
+  if (!(low_confidence >= 0.0 && low_confidence <= 1.0))
+    return wrong("intervals.low_confidence must lie from 0 to 1", "leave it out for 0.5");
+  return std::nullopt;
+}
+
 std::vector<Interval> intervals_of(const activation::ChannelActivations& channel,
                                    std::span<const recording::Span> excluded,
                                    const IntervalSettings& settings) {

@@ -1,12 +1,14 @@
 // Chronodrome, GPL-3.0-or-later.
 #pragma once
 
+#include <optional>
 #include <span>
 #include <string>
 #include <vector>
 
 #include "activation/activation.h"
 #include "base/quantity.h"
+#include "base/result.h"
 #include "recording/time_base.h"
 
 namespace chronodrome::rhythm {
@@ -28,6 +30,9 @@ struct IntervalSettings {
   double pause_ratio = 1.7;      ///< longer than this many running cycles
   std::size_t running_beats = 8; ///< intervals before, whose median is the running cycle
   double low_confidence = 0.5;   ///< a mark below this
+
+  /// Errors: bad_usage, naming the setting.
+  [[nodiscard]] std::optional<Error> check() const;
 };
 
 /// All intervals of a channel, one a mark from the second on. An interval that crosses a stretch that cannot

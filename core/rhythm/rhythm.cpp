@@ -45,20 +45,20 @@ std::optional<Error> RhythmSettings::check() const {
   const auto wrong = [](const char* what, const char* remedy) {
     return Error{ErrorCode::bad_usage, "", {}, what, remedy};
   };
-  if (first_degree_ratio <= 1.0)
+  if (!(first_degree_ratio > 1.0))
     return wrong("rhythm.first_degree_ratio must exceed 1", "set it to 1.5, for example");
-  if (pause_ratio <= 1.0) return wrong("rhythm.pause_ratio must exceed 1", "set it to 1.7, for example");
-  if (arrest_shortest <= Seconds(0.0) || arrest_cycles <= 0.0) {
+  if (!(pause_ratio > 1.0)) return wrong("rhythm.pause_ratio must exceed 1", "set it to 1.7, for example");
+  if (!(arrest_shortest > Seconds(0.0)) || !(arrest_cycles > 0.0)) {
     return wrong("rhythm.arrest_shortest_s and rhythm.arrest_cycles must exceed 0",
                  "leave them out for 5 s and 6 cycles");
   }
-  if (complete_block_beats < 2 || complete_block_time <= Seconds(0.0)) {
+  if (complete_block_beats < 2 || !(complete_block_time > Seconds(0.0))) {
     return wrong("rhythm.complete_block_beats must be 2 or more and rhythm.complete_block_s above 0",
                  "leave them out for 5 beats and 2 s");
   }
   if (running_beats < 3) return wrong("rhythm.running_beats must be 3 or more", "leave it out for 8");
   if (longest_group < 3) return wrong("rhythm.longest_group must be 3 or more", "leave it out for 15");
-  if (timing_tolerance < Seconds(0.0))
+  if (!(timing_tolerance >= Seconds(0.0)))
     return wrong("rhythm.timing_tolerance_s must not be negative", "leave it out for 0.001 s");
   return std::nullopt;
 }

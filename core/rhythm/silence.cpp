@@ -9,80 +9,110 @@
 namespace chronodrome::rhythm {
 namespace {
 
-bool readable(const activation::ChannelActivations& chamber, Seconds from, Seconds to) {
-  return std::none_of(chamber.unreadable.begin(), chamber.unreadable.end(),
-                      [&](const auto& bad) { return bad.span.start < to && from < bad.span.end; });
+/// The parts of [from, to] that can be read, in order.
+std::vector<recording::Span> readable_parts(const activation::ChannelActivations& chamber, Seconds from,
+                                            Seconds to) {
+  std::vector<recording::Span> parts;
+  Seconds reached = from;
+  for (const auto& bad : chamber.unreadable) {
+    if (bad.span.end <= reached) continue;
+    if (bad.span.start >= to) break;
+    if (bad.span.start > reached) parts.push_back({reached, bad.span.start});
+    reached = std::max(reached, bad.span.end);
+  }
+  if (reached < to) parts.push_back({reached, to});
+  return parts;
 }
 
-/// Median of up to `count` intervals that end at or before mark `last`, or of the first ones where none
-/// precede.
-double running_cycle(const std::vector<double>& intervals, std::size_t before, std::size_t count) {
-  if (intervals.empty()) return 0.0;
-  const std::size_t end = before > 0 ? before : std::min(count, intervals.size());
-  const std::size_t start = end > count ? end - count : 0;
-  return numerics::median(std::span(intervals).subspan(start, end - start));
-}
+class SilenceReader {
+public:
+  SilenceReader(const activation::ChannelActivations& chamber, bool is_atrial, Seconds end,
+                const RhythmSettings& settings)
+      : chamber_(chamber), is_atrial_(is_atrial), end_(end), settings_(settings) {}
+
+  std::vector<Episode> read() {
+    const auto& marks = chamber_.marks;
+    if (marks.empty()) {
+      judge(Seconds(0.0), end_, 0.0, false);
+      return std::move(found_);
+    }
+    judge(Seconds(0.0), marks.front().time, opening_cycle(0), false);
+    for (std::size_t i = 1; i < marks.size(); ++i) {
+      const Seconds from = marks[i - 1].time;
+      const Seconds to = marks[i].time;
+      judge(from, to, running_.size() < 3 ? opening_cycle(i - 1) : running_cycle(), true);
+      if (is_readable(from, to)) {
+        running_.push_back((to - from).value());
+      } else {
+        running_.clear(); // what lies behind a loss is judged by its own cycles
+      }
+    }
+    judge(marks.back().time, end_, running_cycle(), false);
+    return std::move(found_);
+  }
+
+private:
+  [[nodiscard]] bool is_readable(Seconds from, Seconds to) const {
+    const auto parts = readable_parts(chamber_, from, to);
+    return parts.size() == 1 && parts[0].start == from && parts[0].end == to;
+  }
+
+  /// Median of the last intervals, long ones included: a heart that has become slow is slow, not pausing.
+  [[nodiscard]] double running_cycle() const {
+    if (running_.empty()) return 0.0;
+    return numerics::median(std::span(running_).last(std::min(running_.size(), settings_.running_beats)));
+  }
+
+  /// Where too few intervals precede: median of the readable intervals that follow mark `from`.
+  [[nodiscard]] double opening_cycle(std::size_t from) const {
+    std::vector<double> cycles;
+    for (std::size_t i = from + 1; i < chamber_.marks.size() && cycles.size() < settings_.running_beats;
+         ++i) {
+      const Seconds start = chamber_.marks[i - 1].time;
+      if (!is_readable(start, chamber_.marks[i].time)) break;
+      cycles.push_back((chamber_.marks[i].time - start).value());
+    }
+    return cycles.empty() ? 0.0 : numerics::median(cycles);
+  }
+
+  /// Each part of a silence that can be read is judged alone: a beat may lie where nothing can be seen.
+  void judge(Seconds from, Seconds to, double cycle, bool between_beats) {
+    const double limit = std::max(settings_.arrest_shortest.value(), settings_.arrest_cycles * cycle);
+    const auto parts = readable_parts(chamber_, from, to);
+    for (const auto& part : parts) {
+      const double length = (part.end - part.start).value();
+      const bool whole = parts.size() == 1 && part.start == from && part.end == to;
+      if (length > limit) {
+        add(part, "arrest", length, cycle, ";limit_ms=" + fixed_text(limit * 1e3, 1));
+      } else if (whole && between_beats && is_atrial_ && cycle > 0.0 &&
+                 length > settings_.pause_ratio * cycle) {
+        // A ventricular pause below the arrest limit is what block rows describe.
+        add(part, "sinus_pause", length, cycle, ";ratio=" + fixed_text(length / cycle, 2));
+      }
+    }
+  }
+
+  void add(const recording::Span& span, const std::string& kind, double length, double cycle,
+           const std::string& numbers) {
+    std::string detail = std::string("chamber=") + (is_atrial_ ? "atrial" : "ventricular") +
+                         ";channel=" + chamber_.channel + ";silence_ms=" + fixed_text(length * 1e3, 1);
+    if (cycle > 0.0) detail += ";running_cycle_ms=" + fixed_text(cycle * 1e3, 1);
+    found_.push_back({span.start, span.end, kind, detail + numbers});
+  }
+
+  const activation::ChannelActivations& chamber_;
+  bool is_atrial_;
+  Seconds end_;
+  const RhythmSettings& settings_;
+  std::vector<double> running_;
+  std::vector<Episode> found_;
+};
 
 } // namespace
 
 std::vector<Episode> find_silence(const activation::ChannelActivations& chamber, bool is_atrial, Seconds end,
                                   const RhythmSettings& settings) {
-  std::vector<Episode> found;
-  const std::string who = is_atrial ? "atrial" : "ventricular";
-  const auto& marks = chamber.marks;
-  if (marks.empty()) {
-    if (end >= settings.arrest_shortest && readable(chamber, Seconds(0.0), end)) {
-      found.push_back(
-          {Seconds(0.0), end, "arrest", "chamber=" + who + ";channel=" + chamber.channel + ";beats=0"});
-    }
-    return found;
-  }
-  // Only cycles that are not themselves pauses may set the running cycle.
-  std::vector<double> cycles;
-  const auto consider = [&](Seconds from, Seconds to, bool between_beats) {
-    const double length = (to - from).value();
-    const double cycle = running_cycle(cycles, cycles.size(), settings.running_beats);
-    if (cycle <= 0.0 || !readable(chamber, from, to)) return false;
-    const double arrest_limit = std::max(settings.arrest_shortest.value(), settings.arrest_cycles * cycle);
-    const std::string numbers = "chamber=" + who + ";channel=" + chamber.channel +
-                                ";interval_ms=" + fixed_text(length * 1e3, 1) +
-                                ";running_cycle_ms=" + fixed_text(cycle * 1e3, 1);
-    if (length > arrest_limit) {
-      found.push_back({from, to, "arrest", numbers + ";limit_ms=" + fixed_text(arrest_limit * 1e3, 1)});
-      return true;
-    }
-    // A ventricular pause below the arrest limit is what block and escape rows describe.
-    if (between_beats && is_atrial && length > settings.pause_ratio * cycle) {
-      found.push_back({from, to, "sinus_pause", numbers + ";ratio=" + fixed_text(length / cycle, 2)});
-      return true;
-    }
-    return false;
-  };
-  // The cycle before the first interval is that of the first intervals, so that an early pause is seen too.
-  for (std::size_t i = 1; i < marks.size() && cycles.size() < settings.running_beats; ++i) {
-    cycles.push_back((marks[i].time - marks[i - 1].time).value());
-  }
-  const std::vector<double> opening = cycles;
-  consider(Seconds(0.0), marks.front().time, false);
-  cycles.clear();
-  for (std::size_t i = 1; i < marks.size(); ++i) {
-    const Seconds from = marks[i - 1].time;
-    const Seconds to = marks[i].time;
-    if (!readable(chamber, from, to)) continue;
-    if (cycles.size() < settings.running_beats) {
-      std::vector<double> padded = opening;
-      padded.swap(cycles);
-      const bool long_one = consider(from, to, true);
-      cycles.swap(padded);
-      if (long_one) continue;
-    } else if (consider(from, to, true)) {
-      continue;
-    }
-    cycles.push_back((to - from).value());
-  }
-  if (cycles.empty()) cycles = opening;
-  consider(marks.back().time, end, false);
-  return found;
+  return SilenceReader(chamber, is_atrial, end, settings).read();
 }
 
 } // namespace chronodrome::rhythm

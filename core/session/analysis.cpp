@@ -69,9 +69,10 @@ private:
       if (!found[i]) return found[i].error();
       const Channel& channel = out_.channels[i];
       ChannelActivations& marks = *found[i];
+      const std::size_t before = marks.marks.size();
       activation::apply_corrections(marks, in_.session.review, channel, in_.settings.activation);
       warn(marks.warnings);
-      out_.corrections.push_back(counts_of(marks, channel.label));
+      out_.corrections.push_back(counts_of(marks, before));
       out_.intervals.push_back(rhythm::intervals_of(marks, excluded_spans(all_exclusions(), channel.label),
                                                     in_.settings.intervals));
       out_.activations.push_back(std::move(marks));
@@ -79,16 +80,14 @@ private:
     return std::nullopt;
   }
 
-  [[nodiscard]] CorrectionCounts counts_of(const ChannelActivations& marks, const std::string& label) const {
+  /// What was applied: a correction that met no mark is not counted. `before`: marks before the corrections.
+  [[nodiscard]] static CorrectionCounts counts_of(const ChannelActivations& marks, std::size_t before) {
     CorrectionCounts counts;
     for (const auto& mark : marks.marks) {
-      counts.added += mark.origin == activation::Origin::added ? 1 : 0;
-      counts.moved += mark.origin == activation::Origin::moved ? 1 : 0;
+      if (mark.origin == activation::Origin::added) ++counts.added;
+      if (mark.origin == activation::Origin::moved) ++counts.moved;
     }
-    for (const auto& correction : in_.session.review) {
-      const bool counted = correction.channel == label && correction.what == document::CorrectionKind::remove;
-      counts.removed += counted ? 1 : 0;
-    }
+    counts.removed = before + counts.added - marks.marks.size();
     return counts;
   }
 
@@ -154,6 +153,7 @@ private:
     }
     auto settings = in_.settings.rhythm;
     settings.timing_tolerance = std::max(settings.timing_tolerance, timing_tolerance(inputs));
+    out_.settings["rhythm.timing_tolerance_s"] = settings.timing_tolerance.value();
     auto rhythm = rhythm::compute(inputs, settings);
     if (!rhythm) return rhythm.error();
     out_.rhythm = std::move(rhythm).value();

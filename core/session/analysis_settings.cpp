@@ -20,6 +20,7 @@ std::optional<Error> first_fault(const AnalysisSettings& settings) {
   if (auto error = settings.activation.check()) return error;
   if (auto error = settings.conduction.check()) return error;
   if (auto error = settings.rhythm.check()) return error;
+  if (auto error = settings.intervals.check()) return error;
   if (auto error = settings.response.check()) return error;
   if (const Done checked = settings.fit.check(); !checked) return checked.error();
   return std::nullopt;
@@ -87,8 +88,9 @@ std::string settings_page() {
   for (const auto& row : setting_rows()) {
     std::string meaning = row.meaning;
     if (!row.allowed.empty()) meaning += " (" + row.allowed + ")";
-    page +=
-        "| `" + row.key + "` | " + row.unit + " | " + text_of(row.get(defaults)) + " | " + meaning + " |\n";
+    page += "| `" + row.key + "` | " + row.unit + " | " +
+            (row.follows_species ? std::string("by species") : text_of(row.get(defaults))) + " | " + meaning +
+            " |\n";
   }
   return page;
 }

@@ -34,8 +34,9 @@ struct SettingRow {
   std::string key;
   std::string unit; ///< empty: none
   std::string meaning;
-  std::string allowed; ///< for words; empty for numbers
-  /// The value in effect; an empty text stands for "by species".
+  std::string allowed;          ///< for words; empty for numbers
+  bool follows_species = false; ///< as long as it is not given
+  /// The value in effect; where it follows the species, that of the species.
   std::function<document::SettingValue(const AnalysisSettings&)> get;
   /// Sets it; false if the value is of the wrong kind or no allowed word.
   std::function<bool(AnalysisSettings&, const document::SettingValue&)> set;

@@ -32,9 +32,14 @@ std::vector<ConductionFact> conduction_facts(const conduction::PathwayDelays& pa
   std::size_t blocked = 0;
   for (const auto& row : pathway.rows) {
     if (row.state == DelayState::conducted && row.delay) delays_ms.push_back(in_milliseconds(*row.delay));
-    blocked += row.state == DelayState::blocked ? 1 : 0;
+    if (row.state == DelayState::blocked && !row.answer_unseen) ++blocked;
   }
   std::vector<ConductionFact> facts;
+  const std::size_t n = delays_ms.size();
+  if (n == 0) {
+    facts.push_back({pathway.pathway, "delay", "ms", {}, {}, {}, 0, "no conducted beat"});
+    return facts;
+  }
   if (!pathway.within_chamber) {
     facts.push_back({pathway.pathway,
                      "control_delay",
@@ -44,11 +49,6 @@ std::vector<ConductionFact> conduction_facts(const conduction::PathwayDelays& pa
                      {},
                      0,
                      "what pairing took as the usual delay"});
-  }
-  const std::size_t n = delays_ms.size();
-  if (n == 0) {
-    facts.push_back({pathway.pathway, "delay", "ms", {}, {}, {}, 0, "no conducted beat"});
-    return facts;
   }
   const double median = numerics::median(delays_ms);
   const double half = half_width(delays_ms);

@@ -12,6 +12,16 @@
 namespace chronodrome::session {
 namespace {
 
+/// What the unit makes likely, so that the signal is looked at by the right rules; nothing more follows from
+/// it.
+recording::Role likely_role(const std::string& unit) {
+  for (const char* electrical : {"mV", "uV", "V", "counts", ""}) {
+    if (unit == electrical) return recording::Role::ventricular;
+  }
+  if (unit == "mmHg") return recording::Role::pressure;
+  return unit == "mN" || unit == "g" ? recording::Role::tension : recording::Role::other;
+}
+
 /// SD of white noise from differences of neighbours, robust against beats: median over up to 60 windows of
 /// one second that are spread evenly over the signal.
 double noise_of(const recording::Signal& signal) {
@@ -76,6 +86,8 @@ Result<std::vector<SignalLook>> inspect(const std::shared_ptr<const recording::R
     recording::Channel channel;
     channel.label = recording->signals[i].source_as_written;
     channel.unit = recording->signals[i].unit;
+    channel.role = likely_role(channel.unit);
+    if (recording::is_electrogram(channel.role)) channel.lead = recording::Lead::bipolar;
     channel.recording = recording;
     channel.signal = i;
     const auto found = activation::compute(channel, {});

@@ -1,4 +1,5 @@
 // Chronodrome, GPL-3.0-or-later.
+#include "base/number_text.h"
 #include "session/analysis_settings.h"
 
 namespace chronodrome::session {
@@ -33,7 +34,7 @@ bool from_number(double number, Quantity<Unit>& field) {
 /// A numeric setting; `field` gives the place in the settings.
 template <class Field>
 SettingRow number(std::string key, std::string unit, std::string meaning, Field field) {
-  SettingRow row{std::move(key), std::move(unit), std::move(meaning), "", {}, {}};
+  SettingRow row{std::move(key), std::move(unit), std::move(meaning), "", false, {}, {}};
   row.get = [field](const AnalysisSettings& s) {
     return SettingValue(to_number(field(const_cast<AnalysisSettings&>(s))));
   };
@@ -44,13 +45,14 @@ SettingRow number(std::string key, std::string unit, std::string meaning, Field 
   return row;
 }
 
-/// A numeric setting that follows the species as long as it is not given.
-template <class Field>
-SettingRow by_species(std::string key, std::string unit, std::string meaning, Field field) {
-  SettingRow row{std::move(key), std::move(unit), std::move(meaning), "", {}, {}};
-  row.get = [field](const AnalysisSettings& s) {
+/// A numeric setting that follows the species as long as it is not given; `usual` is what it then is.
+template <class Field, class Usual>
+SettingRow by_species(std::string key, std::string unit, std::string meaning, Field field, Usual usual) {
+  SettingRow row{std::move(key), std::move(unit), std::move(meaning), "", true, {}, {}};
+  row.get = [field, usual](const AnalysisSettings& s) {
     const auto& value = field(const_cast<AnalysisSettings&>(s));
-    return value ? SettingValue(to_number(*value)) : SettingValue(std::string("by species"));
+    if (value) return SettingValue(to_number(*value));
+    return SettingValue(usual(conditioning::traits_of(s.activation.conditioning.species)));
   };
   row.set = [field](AnalysisSettings& s, const SettingValue& value) {
     const auto* given = std::get_if<double>(&value);
@@ -62,6 +64,8 @@ SettingRow by_species(std::string key, std::string unit, std::string meaning, Fi
   return row;
 }
 
+using Traits = conditioning::SpeciesTraits;
+
 struct MainsWord {
   const char* word;
   conditioning::MainsChoice choice;
@@ -72,7 +76,8 @@ constexpr MainsWord kMainsWords[] = {{"automatic", conditioning::MainsChoice::au
                                      {"off", conditioning::MainsChoice::off}};
 
 SettingRow mains_row() {
-  SettingRow row{"conditioning.mains", "Hz", "mains hum to take out", "automatic, 50, 60 or off", {}, {}};
+  SettingRow row{
+      "conditioning.mains", "Hz", "mains hum to take out", "automatic, 50, 60 or off", false, {}, {}};
   row.get = [](const AnalysisSettings& s) {
     for (const auto& word : kMainsWords) {
       if (word.choice == s.activation.conditioning.mains.nominal) return SettingValue(std::string(word.word));
@@ -97,7 +102,7 @@ SettingRow model_row() {
   for (const auto& meaning : pharmacology::model_meanings()) {
     allowed += (allowed.empty() ? "" : ", ") + std::string(meaning.name);
   }
-  SettingRow row{"pharmacology.model", "", "model fitted to each curve", allowed, {}, {}};
+  SettingRow row{"pharmacology.model", "", "model fitted to each curve", allowed, false, {}, {}};
   row.get = [](const AnalysisSettings& s) { return SettingValue(pharmacology::model_name(s.model)); };
   row.set = [](AnalysisSettings& s, const SettingValue& value) {
     const auto* text = std::get_if<std::string>(&value);
@@ -119,10 +124,15 @@ void add_signal_rows(std::vector<SettingRow>& rows) {
   rows.push_back(by_species(
       "conditioning.detection_high_pass_hz", "Hz",
       "zero-phase high-pass of the signal that beats are found on (electrograms)",
-      [](S & s) -> auto& { return s.activation.conditioning.detection_high_pass; }));
+      [](S & s) -> auto& { return s.activation.conditioning.detection_high_pass; },
+      [](const Traits& t) { return t.detection_high_pass.value(); }));
   rows.push_back(by_species(
       "conditioning.mechanical_low_pass_hz", "Hz", "zero-phase low-pass of tension and pressure",
-      [](S & s) -> auto& { return s.activation.conditioning.mechanical_low_pass; }));
+      [](S & s) -> auto& { return s.activation.conditioning.mechanical_low_pass; },
+      [](const Traits& t) {
+        return number_text(t.tension_low_pass.value()) + " (tension), " +
+               number_text(t.pressure_low_pass.value()) + " (pressure)";
+      }));
   rows.push_back(number(
       "conditioning.longest_clip_s", "s", "a clipped run this long or longer cannot be read",
       [](S & s) -> auto& { return s.activation.conditioning.longest_clip; }));
@@ -131,11 +141,13 @@ void add_signal_rows(std::vector<SettingRow>& rows) {
       [](S & s) -> auto& { return s.activation.conditioning.clip_recovery; }));
   rows.push_back(by_species(
       "activation.refractory_atrial_s", "s", "shortest spacing of two atrial activations",
-      [](S & s) -> auto& { return s.activation.refractory_atrial; }));
+      [](S & s) -> auto& { return s.activation.refractory_atrial; },
+      [](const Traits& t) { return t.refractory_atrial.value(); }));
   rows.push_back(by_species(
       "activation.refractory_ventricular_s", "s",
       "shortest spacing of two ventricular activations or contractions",
-      [](S & s) -> auto& { return s.activation.refractory_ventricular; }));
+      [](S & s) -> auto& { return s.activation.refractory_ventricular; },
+      [](const Traits& t) { return t.refractory_ventricular.value(); }));
   rows.push_back(number(
       "activation.threshold_share", "", "of the way from noise to the local beats that a beat must reach",
       [](S & s) -> auto& { return s.activation.threshold_share; }));

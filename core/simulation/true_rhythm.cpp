@@ -112,7 +112,7 @@ private:
       return;
     }
     times.push_back(end_);
-    std::vector<double> cycles; // none of them a pause
+    std::vector<double> cycles; // long ones too: a heart that has become slow is slow, not pausing
     for (std::size_t i = 1; i < times.size(); ++i) {
       const double interval = times[i] - times[i - 1];
       const bool is_last = i + 1 == times.size();
@@ -123,11 +123,8 @@ private:
             "interval_s=" + number_text(interval, 6) + ";running_cycle_s=" + number_text(cycle, 6);
         if (interval > std::max(kArrestSeconds, kArrestCycles * cycle)) {
           add(times[i - 1], times[i], "arrest", numbers);
-          continue;
-        }
-        if (atrial && !is_last && interval > kPauseRatio * cycle) {
+        } else if (atrial && !is_last && interval > kPauseRatio * cycle) {
           add(times[i - 1], times[i], "sinus_pause", numbers);
-          continue;
         }
       }
       cycles.push_back(interval);

@@ -6,6 +6,7 @@
 #include <cmath>
 
 #include "activation/compute.h"
+#include "activation/finish.h"
 #include "numerics/robust.h"
 #include "support/beat_matching.h"
 #include "support/channel_of_samples.h"
@@ -274,4 +275,70 @@ TEST_CASE("settings out of range are refused", "[detection]") {
   const auto channel = channel_of_samples({0.0, 1.0}, 1000.0, Role::atrial);
   CHECK_FALSE(activation::compute(channel, wrong).ok());
   CHECK_FALSE(activation::compute(channel_of_samples({}, 1000.0, Role::atrial), {}).ok());
+}
+
+TEST_CASE("a burst of muscle is not counted, a small early beat of the same shape is", "[detection]") {
+  Trace trace(60.0, 1000.0);
+  std::vector<double> truth;
+  for (double t = 0.4; t < 59.5; t += 0.4)
+    truth.push_back(t);
+  for (const double t : truth)
+    trace.add_front(t, 1.0, 2e-3);
+  trace.add_front(20.2, 0.45, 2e-3); // early, small, of the same shape
+  truth.push_back(20.2);
+  std::sort(truth.begin(), truth.end());
+  // A shudder of 0.3 of the beats' amplitude between two beats.
+  trace.add(40.19, 0.03,
+            [](double t) { return 0.3 * std::cos(750.0 * (t - 40.19)) * std::cos(52.0 * (t - 40.19)); });
+  trace.add_noise(0.01, 1);
+  const Matching matched = match(found_on(trace).marks, truth, 0.010);
+  CHECK(matched.missed == 0);
+  CHECK(matched.false_beats == 0);
+}
+
+TEST_CASE("marks at a multiple of the mains period are doubted", "[detection]") {
+  const auto doubts = [](double interval_s) {
+    ChannelActivations channel;
+    for (int k = 0; k < 100; ++k) {
+      activation::Activation mark;
+      mark.time = Seconds(interval_s * k);
+      channel.marks.push_back(mark);
+    }
+    return activation::doubts_about(channel, 0).size();
+  };
+  CHECK(doubts(0.080) == 1); // 750/min: four periods of 50 Hz
+  CHECK(doubts(5.0 / 60.0) == 1);
+  CHECK(doubts(0.087) == 0);
+  CHECK(doubts(0.200) == 0); // pacing at 300/min is common, whatever the mains
+}
+
+TEST_CASE("odd signals are answered, not stumbled over", "[detection]") {
+  const double rate = GENERATE(20.0, 50.0, 100.0, 240.0, 1999.0, 20000.0);
+  const std::size_t length = GENERATE(std::size_t{1}, std::size_t{2}, std::size_t{31}, std::size_t{40},
+                                      std::size_t{333}, std::size_t{20001});
+  for (const Role role : {Role::sinus, Role::his, Role::ventricular, Role::ecg, Role::map, Role::tension,
+                          Role::pressure, Role::flow, Role::stimulus}) {
+    for (int kind = 0; kind < 4; ++kind) {
+      std::vector<double> x(length);
+      NormalNoise noise(4);
+      for (std::size_t i = 0; i < length; ++i) {
+        x[i] = kind == 0   ? 7.0
+               : kind == 1 ? 1e12 * noise.next()
+               : kind == 2 ? static_cast<double>(i % 2)
+                           : (i == length / 2 ? 1.0 : 0.0);
+      }
+      const auto result = activation::compute(channel_of_samples(x, rate, role, Lead::unipolar), {});
+      INFO("role " << recording::name_of(role) << ", kind " << kind << ", rate " << rate << ", length "
+                   << length);
+      REQUIRE(result.ok());
+      for (std::size_t i = 0; i < result->marks.size(); ++i) {
+        CHECK(std::isfinite(result->marks[i].sample));
+        CHECK((result->marks[i].confidence >= 0.0 && result->marks[i].confidence <= 1.0));
+        if (i > 0) CHECK(result->marks[i - 1].time < result->marks[i].time);
+      }
+      for (const auto& window : result->quality)
+        CHECK((window.index >= 0 && window.index <= 100));
+      CHECK(std::isfinite(result->timing_sd.value()));
+    }
+  }
 }

@@ -1,5 +1,7 @@
 // Chronodrome, GPL-3.0-or-later.
 // What decides about a beat lies within 30 s of it; how the work is divided changes nothing.
+#include <sys/resource.h>
+
 #include <algorithm>
 #include <catch2/catch.hpp>
 #include <cmath>
@@ -144,4 +146,44 @@ TEST_CASE("hum of 0.3 of the beats moves no mark by more than 0.1 ms", "[localit
   REQUIRE(before.marks.size() == after.marks.size());
   for (std::size_t i = 0; i < before.marks.size(); ++i)
     CHECK_THAT(after.marks[i].time.value(), WithinAbs(before.marks[i].time.value(), 1e-4));
+}
+
+namespace {
+
+/// A day of beats at 240/min under noise, made as it is read.
+class EndlessBeats final : public recording::SampleStore {
+public:
+  EndlessBeats(std::size_t size, double rate) : size_(size), rate_(rate) {}
+  [[nodiscard]] std::size_t size() const override { return size_; }
+  void read(std::size_t first, std::span<double> out) const override {
+    for (std::size_t i = 0; i < out.size(); ++i) {
+      std::uint64_t h = (first + i + 1) * 0x9E3779B97F4A7C15ULL;
+      h = (h ^ (h >> 29U)) * 0xBF58476D1CE4E5B9ULL;
+      const double u = (std::fmod(static_cast<double>(first + i) / rate_, 0.25) - 0.125) / 2e-3;
+      out[i] = 0.05 * (static_cast<double>(h >> 11U) * 0x1.0p-53 - 0.5) - u * std::exp(0.5 - 0.5 * u * u);
+    }
+  }
+
+private:
+  std::size_t size_;
+  double rate_;
+};
+
+} // namespace
+
+TEST_CASE("a day at 1 kHz is read in bounded memory", "[locality][.long]") {
+  auto channel = channel_of_samples({0.0}, 1000.0, Role::ventricular, Lead::unipolar);
+  auto recording = std::make_shared<recording::Recording>(*channel.recording);
+  const std::size_t size = 86400000;
+  recording->signals[0].samples = std::make_shared<EndlessBeats>(size, 1000.0);
+  recording->signals[0].time_base = recording::TimeBase(Hertz(1000.0), {{0, size, Seconds(0.0)}});
+  channel.recording = recording;
+  const auto found = activation::compute(channel, {});
+  REQUIRE(found.ok());
+  CHECK(found->marks.size() == 86400 * 4);
+  rusage usage{};
+  getrusage(RUSAGE_SELF, &usage);
+  // 345600 beats of 168 bytes, twice, and a block of some 300000 samples: about 150 MB; the samples alone
+  // would be 690 MB.
+  CHECK(usage.ru_maxrss < 400 * 1024);
 }

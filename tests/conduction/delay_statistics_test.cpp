@@ -50,3 +50,23 @@ TEST_CASE("none, one and two delays give what they can", "[delay_statistics]") {
   const std::vector<double> two = {0.05, 0.06};
   CHECK(statistics_of(two).half_width > Seconds(0.0));
 }
+
+TEST_CASE("delays that count for hardly more than one have no interval", "[delay_statistics]") {
+  // One slow wave over ten beats: lag-1 autocorrelation about cos(36 degrees) = 0.81, so ten count for 10 x
+  // 0.19 / 1.81 = 1.05. Student's t with a twentieth of a degree of freedom exceeds any clock.
+  std::vector<double> delays;
+  for (int i = 0; i < 10; ++i)
+    delays.push_back(0.06 + 1e-3 * std::sin(2.0 * 3.14159265358979 * i / 10.0));
+  const auto wave = statistics_of(delays);
+  CHECK(wave.n_independent > 1.0);
+  CHECK(wave.n_independent < 1.5);
+  CHECK(wave.half_width == Seconds(0.0));
+  CHECK(wave.sem > Seconds(0.0));
+  // A ramp of ten counts for more than 1.5 and keeps its interval.
+  for (int i = 0; i < 10; ++i)
+    delays[static_cast<std::size_t>(i)] = 0.06 + 1e-3 * i;
+  const auto ramp = statistics_of(delays);
+  CHECK(ramp.n_independent > 1.5);
+  CHECK(ramp.half_width > Seconds(0.0));
+  CHECK(ramp.half_width < Seconds(1.0));
+}

@@ -426,3 +426,70 @@ TEST_CASE("empty channels pair to nothing, wrong settings are refused", "[pairin
   settings.antegrade = conduction::DelayWindow{milliseconds(50.0), milliseconds(50.0)};
   CHECK(settings.check());
 }
+
+TEST_CASE("an answer that could not be seen is no evidence of block", "[pairing]") {
+  // 1:1 at 50 ms; the ventricular lead is off from 40 to 50 s. Atrial beats every 200 ms: those whose next
+  // 350 ms (guinea pig) meet the loss run from 39.8 s to 49.8 s; the one at 39.8 s was answered.
+  const auto a = marks_at(every(200, 400));
+  std::vector<double> v;
+  for (const double t : every(200, 400, 50)) {
+    if (t < 40000.0 || t >= 50000.0) v.push_back(t);
+  }
+  auto ventricle = marks_at(v);
+  ventricle.unreadable.push_back({{Seconds(40.0), Seconds(50.0)}, "flat"});
+  auto paired = pair_av(a, ventricle);
+  check_complete(paired, 400, v.size());
+  for (const auto& row : paired.rows) {
+    const bool lost = *row.from >= 200 && *row.from < 250;
+    CHECK(row.state == (lost ? DelayState::blocked : DelayState::conducted));
+    CHECK(row.answer_unseen == lost);
+  }
+  // What the atrial lead cannot read hides no answer.
+  ventricle.unreadable.clear();
+  auto atrium = a;
+  atrium.unreadable.push_back({{Seconds(40.001), Seconds(40.01)}, "noise"});
+  paired = pair_av(atrium, ventricle);
+  CHECK(count(paired, DelayState::blocked) == 50);
+  CHECK(std::none_of(paired.rows.begin(), paired.rows.end(), [](const auto& r) { return r.answer_unseen; }));
+}
+
+TEST_CASE("a beat whose answer would lie behind the end of the signal is not known to be blocked",
+          "[pairing]") {
+  // Beats at 0 ... 3.8 s, the last two without an answer. The signal ends at 4.1 s: 300 ms behind the last,
+  // 500 ms behind the one before; an answer takes at most 350 ms (guinea pig).
+  const auto a = marks_at(every(200, 20));
+  const auto v = marks_at(every(200, 18, 50));
+  const auto unseen = [&](std::optional<Seconds> end) {
+    const auto paired =
+        conduction::pair("AV", {&a, Role::atrial, {}}, {&v, Role::ventricular, end}, ConductionSettings{});
+    REQUIRE(paired.ok());
+    std::vector<std::size_t> found;
+    for (const auto& row : paired->rows) {
+      if (row.answer_unseen) found.push_back(*row.from);
+    }
+    CHECK(count(*paired, DelayState::blocked) == 2);
+    return found;
+  };
+  CHECK(unseen(Seconds(4.1)) == std::vector<std::size_t>{19});
+  CHECK(unseen(Seconds(3.9)) == std::vector<std::size_t>{18, 19});
+  CHECK(unseen(Seconds(4.2)).empty()); // 400 ms behind the last
+  CHECK(unseen(std::nullopt).empty()); // not known
+}
+
+TEST_CASE("cycles with a loss in them say nothing of the control delay", "[pairing]") {
+  // True delay 60 ms, atrial cycle 200 ms. At first a loss in both channels from 40 to 240 ms of every 400 ms
+  // hides the answer to one beat and the beat after: what is left looks like one to one at 260 ms.
+  std::vector<double> a, v;
+  std::vector<activation::Unreadable> losses;
+  for (std::size_t i = 0; i < 100; ++i) {
+    const double t = 200.0 * static_cast<double>(i);
+    const bool lossy = i < 60;
+    if (lossy && i % 2 == 0) losses.push_back({{milliseconds(t + 40.0), milliseconds(t + 240.0)}, "noise"});
+    if (!lossy || i % 2 == 0) a.push_back(t);
+    if (!lossy || i % 2 == 1) v.push_back(t + 60.0);
+  }
+  auto atrium = marks_at(a);
+  auto ventricle = marks_at(v);
+  atrium.unreadable = ventricle.unreadable = losses;
+  CHECK_THAT(in_milliseconds(pair_av(atrium, ventricle).control_delay), WithinAbs(60.0, 1e-9));
+}

@@ -280,7 +280,8 @@ TEST_CASE("a quote that is not closed is an error with its line", "[csv]") {
 }
 
 TEST_CASE("a quoted cell may hold delimiters, quotes and line ends", "[csv]") {
-  const auto read = good("time (s),RA (mV),remark\n0.000,1,\"a \"\"b\"\", c\nd\"\n0.001,2.5,\n0.002,OVER,last\n");
+  const auto read =
+      good("time (s),RA (mV),remark\n0.000,1,\"a \"\"b\"\", c\nd\"\n0.001,2.5,\n0.002,OVER,last\n");
   REQUIRE(read.annotations.size() == 2);
   CHECK(read.annotations[0].text == "a \"b\", c d");
   CHECK(read.annotations[1].text == "last");

@@ -185,3 +185,29 @@ TEST_CASE("columns of numbers without names are not given the wrong ones", "[csv
   CHECK(error.code == ErrorCode::wrong_format);
   CHECK(error.place.column == 3);
 }
+
+TEST_CASE("a column called T is time only if it rises and its unit does not speak against it", "[csv]") {
+  const auto tension = read_table("RA (mV),T (mN)\n1.5,2\n2.5,3\n3,1\n", with_rate(100.0));
+  REQUIRE(tension.ok());
+  CHECK(samples_of(*tension, "T") == std::vector<double>{2, 3, 1});
+  const auto falling = read_table("RA,T\n1.5,2.5\n2.5,3\n3,1\n", with_rate(100.0));
+  REQUIRE(falling.ok());
+  CHECK(falling->signals.size() == 2);
+  const auto time = read_table("RA (mV),t\n1.5,0.000\n2.5,0.002\n3,0.004\n");
+  REQUIRE(time.ok());
+  CHECK(time->signals[0].time_base.rate() == Hertz(500.0));
+  CHECK(read_table("time_s,RA_mV\n0.000,0.5\n0.002,1.5\n")->signals[0].unit == "mV");
+  CHECK(read_table("time (s),lead_s\n0.000,0.5\n0.002,1.5\n")->signals[0].unit.empty());
+}
+
+TEST_CASE("an index without a name counts rows, or is the time", "[csv]") {
+  const auto counted = read_table(",time (s),RA (mV)\n0,0.000,0.5\n1,0.002,1.5\n2,0.004,0.5\n");
+  REQUIRE(counted.ok());
+  REQUIRE(counted->signals.size() == 1);
+  CHECK(counted->signals[0].time_base.rate() == Hertz(500.0));
+  const Error error = error_of(",RA (mV)\n0,0.5\n1,1.5\n2,0.5\n");
+  CHECK(error.what.find("no time column") != std::string::npos);
+  const auto time = read_table(",RA (mV)\n0.000,0.5\n0.002,1.5\n0.004,0.5\n");
+  REQUIRE(time.ok());
+  CHECK(time->signals[0].time_base.rate() == Hertz(500.0));
+}

@@ -162,7 +162,8 @@ TEST_CASE("files have identity, and their paths may be anything", "[intake]") {
 }
 
 TEST_CASE("what cannot be opened is said so", "[intake]") {
-  for (const std::string& path : {std::string("/nonexistent/heart.edf"), std::string(CHRONODROME_BUILD_DIR)}) {
+  for (const std::string& path :
+       {std::string("/nonexistent/heart.edf"), std::string(CHRONODROME_BUILD_DIR)}) {
     const auto read = read_recording(path, in_memory());
     REQUIRE_FALSE(read.ok());
     CHECK(read.error().code == ErrorCode::file_missing);

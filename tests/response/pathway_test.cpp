@@ -94,6 +94,9 @@ TEST_CASE("two to one block is measured from the beats that conduct, and flagged
   CHECK_THAT(*row.value, WithinRel(100.0, 1e-12));
   CHECK(row.n_beats == 60);
   CHECK(says(row, "60 of 120 activations of RA conducted: a delay of conducted beats alone is biased low"));
+  // The terminal marks such rows by how the flag begins.
+  CHECK(std::any_of(row.flags.begin(), row.flags.end(),
+                    [](const std::string& flag) { return flag.rfind("conducted beats only", 0) == 0; }));
   row = read(heart, "conducted:AV").front();
   CHECK(*row.value == 0.5);
   CHECK(row.unit == "1");

@@ -297,3 +297,36 @@ TEST_CASE("every status has its word", "[response]") {
   for (std::size_t i = 0; i < words.size(); ++i)
     CHECK(response::name_of(static_cast<Status>(i)) == words[i]);
 }
+
+TEST_CASE("the limit of a silent rate comes from the longest silence that nothing lost breaks",
+          "[response]") {
+  // Window 270 to 300 s without a beat. Lost from 280 to 286 s, and excluded from 290 to 292 s: a beat may
+  // lie in either, so 10 s is the longest silence, not the 22 s that can be read.
+  Heart heart{channel_of("RA", regular(0.0, 260.0, 0.5)), plan_of({0.0}, 300.0), {}};
+  heart.channel.unreadable = {{{Seconds(280.0), Seconds(286.0)}, "gap"}};
+  heart.excluded = {{"RA", {Seconds(290.0), Seconds(292.0)}}};
+  auto row = rates_of(heart).front();
+  CHECK(row.status == Status::arrested);
+  CHECK(row.limit.value() == 6.0); // 60 / 10 s, exact
+  // A beat at 275 s: 8 s from 292 s on is then the longest, before it 5 s and behind it 5 s.
+  heart.channel = channel_of("RA", {275.0});
+  heart.channel.unreadable = {{{Seconds(280.0), Seconds(286.0)}, "gap"}};
+  row = rates_of(heart).front();
+  CHECK(row.status == Status::censored);
+  CHECK(row.limit.value() == 7.5); // 60 / 8 s, exact
+  CHECK(row.limit_side == "at_most");
+}
+
+TEST_CASE("what is excluded and what cannot be read are lost together", "[response]") {
+  // 13.5 s each of 30 s, 45 %: neither exceeds half, both leave 10 %.
+  Heart heart{channel_of("RA", regular(0.0, 300.0, 0.5)), plan_of({0.0}, 300.0), {}};
+  heart.channel.unreadable = {{{Seconds(270.0), Seconds(283.5)}, "saturation"}};
+  heart.excluded = {{"RA", {Seconds(283.5), Seconds(297.0)}}};
+  auto row = rates_of(heart).front();
+  CHECK(row.status == Status::unreadable);
+  CHECK_FALSE(row.value.has_value());
+  heart.excluded[0].span.end = Seconds(297.5);
+  CHECK(rates_of(heart).front().status == Status::excluded);
+  heart.excluded[0].span = heart.channel.unreadable[0].span; // the same 45 %: 55 % is left
+  CHECK(rates_of(heart).front().status == Status::ok);
+}

@@ -188,3 +188,78 @@ TEST_CASE("rhythm settings out of range are refused before any work", "[rhythm]"
   REQUIRE_FALSE(result.ok());
   CHECK(result.error().code == ErrorCode::bad_usage);
 }
+
+TEST_CASE("a beat whose answer cannot be seen is no block", "[rhythm]") {
+  auto av = pathway(200, repeated({60}, 40));
+  for (std::size_t i = 10; i < 20; ++i) {
+    av.rows[i].state = DelayState::blocked;
+    av.rows[i].answer_unseen = true;
+    av.rows[i].to_time.reset();
+    av.rows[i].delay.reset();
+  }
+  av.rows.back().state = DelayState::blocked;
+  av.rows.back().answer_unseen = true;
+  av.rows.back().delay.reset();
+  for (const auto& episode : read_block(av, 8.0).episodes)
+    CHECK(episode.kind == "regular");
+}
+
+TEST_CASE("retrograde beats break a sequence, and are no dropped beats", "[rhythm]") {
+  auto av = pathway(200, {60, 60, 60, -1, 60, 60, -1, 60, 60, 60});
+  for (std::size_t i = 4; i < 6; ++i) {
+    av.rows[i].state = DelayState::retrograde;
+    av.rows[i].delay = milliseconds(-50);
+  }
+  for (const auto& episode : read_block(av, 2.0).episodes) {
+    CHECK(episode.kind != "second_degree_fixed");
+    CHECK(episode.kind != "complete_av_block");
+    // No row bridges the retrograde stretch from 0.8 to 1.2 s.
+    if (episode.kind != "regular") CHECK((episode.end <= Seconds(0.81) || episode.start >= Seconds(1.19)));
+  }
+}
+
+TEST_CASE("one dropped beat before the atria fall silent is no complete block", "[rhythm]") {
+  auto av = pathway(200, {60, 60, 60, -1});
+  auto later = pathway(200, {60, 60, 60}, 30'000.0);
+  av.rows.insert(av.rows.end(), later.rows.begin(), later.rows.end());
+  const auto result = read_block(av, 31.0);
+  CHECK(of_kind(result, "complete_av_block").empty());
+  REQUIRE(of_kind(result, "second_degree_fixed").size() == 1);
+  CHECK(of_kind(result, "second_degree_fixed")[0].end < Seconds(0.9));
+}
+
+TEST_CASE("a heart that has become slow is slow, not pausing for good", "[rhythm]") {
+  std::vector<double> times;
+  for (int i = 0; i < 40; ++i)
+    times.push_back(0.15 * i);
+  for (int i = 0; i < 100; ++i)
+    times.push_back(times.back() + 0.3);
+  const auto atria = chamber(times);
+  rhythm::RhythmInputs inputs;
+  inputs.atrial = &atria;
+  inputs.end = Seconds(times.back() + 0.2);
+  const auto result = rhythm::compute(inputs, {});
+  REQUIRE(result.ok());
+  // Of eight intervals the median turns to the new cycle with the fifth.
+  CHECK(of_kind(*result, "sinus_pause").size() <= 4);
+  CHECK_FALSE(of_kind(*result, "sinus_pause").empty());
+}
+
+TEST_CASE("silence about a short loss of signal is still arrest", "[rhythm]") {
+  rhythm::RhythmInputs inputs;
+  inputs.end = Seconds(60.0);
+  for (const auto& times :
+       {std::vector<double>{}, std::vector<double>{0.1}, std::vector<double>{0.1, 0.3, 0.5, 0.7}}) {
+    CAPTURE(times.size());
+    auto atria = chamber(times);
+    atria.unreadable.push_back({{Seconds(20.0), Seconds(20.3)}, "lead"});
+    inputs.atrial = &atria;
+    const auto result = rhythm::compute(inputs, {});
+    REQUIRE(result.ok());
+    const auto arrests = of_kind(*result, "arrest");
+    REQUIRE(arrests.size() == 2);
+    CHECK(arrests[0].end == Seconds(20.0));
+    CHECK(arrests[1].start == Seconds(20.3));
+    CHECK(arrests[1].end == Seconds(60.0));
+  }
+}

@@ -1,8 +1,8 @@
 // Chronodrome, GPL-3.0-or-later.
 #include <catch2/catch.hpp>
 
-#include <chrono>
 #include <cmath>
+#include <ctime>
 #include <numbers>
 #include <random>
 #include <vector>
@@ -129,13 +129,12 @@ TEST_CASE("a Hill fit with all its profiles takes less than two milliseconds", "
   std::vector<std::vector<CurvePoint>> all;
   for (int i = 0; i < 200; ++i)
     all.push_back(series(eight, noise));
-  const auto start = std::chrono::steady_clock::now();
+  const std::clock_t start = std::clock(); // of this process, whatever else the machine does
   std::size_t converged = 0;
   for (const auto& points : all)
     converged += fit_curve(points, Model::hill).converged ? 1U : 0U;
-  const double each =
-      std::chrono::duration<double, std::milli>(std::chrono::steady_clock::now() - start).count() / 200.0;
+  const double each = 1e3 * static_cast<double>(std::clock() - start) / CLOCKS_PER_SEC / 200.0;
   WARN("a Hill fit of 8 points takes " << each << " ms");
   CHECK(converged == 200);
-  CHECK(each < 2.0); // on the build machine of an ordinary laptop, unoptimised builds excepted
+  CHECK(each < 2.0); // in an optimised build
 }
