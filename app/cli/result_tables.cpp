@@ -36,7 +36,8 @@ int decimals_for(double value) {
 /// A response as read: value, or what its status says instead.
 std::string response_cell(const Response& row) {
   if (row.value) {
-    return fixed_text(*row.value, decimals_for(*row.value)) + (row.status == Status::not_steady ? " *" : "");
+    return fixed_text(*row.value, decimals_for(*row.value)) + (row.is_selected ? " #" : "") +
+           (row.status == Status::not_steady ? " *" : "");
   }
   std::string cell = response::name_of(row.status);
   if (row.limit) cell += (row.limit_side == "at_most" ? " <= " : " >= ") + number_text(*row.limit, 4);
@@ -49,6 +50,7 @@ std::string curve_text(const session::SessionResult& result, int curve) {
   std::map<std::pair<double, std::string>, std::string> cells;
   std::string agent, background;
   bool not_steady = false;
+  bool of_survivors = false;
   for (const Response& row : result.responses.rows) {
     if (row.curve != curve) continue;
     const std::string head = row.measure + (row.unit == "1" ? "" : ", " + row.unit);
@@ -61,6 +63,7 @@ std::string curve_text(const session::SessionResult& result, int curve) {
     agent = row.agent;
     background = row.background;
     not_steady = not_steady || row.status == Status::not_steady;
+    of_survivors = of_survivors || (row.value && row.is_selected);
   }
   std::vector<std::string> head = {"mol/L"};
   head.insert(head.end(), measures.begin(), measures.end());
@@ -74,6 +77,9 @@ std::string curve_text(const session::SessionResult& result, int curve) {
   std::string text = "\ncurve " + std::to_string(curve) + ": " + agent +
                      (background.empty() ? "" : " with " + background) + "\n";
   text += table.text();
+  if (of_survivors)
+    text += "  # beats were blocked: a delay is that of the conducted beats alone, a rate not that of the "
+            "chamber above\n";
   if (not_steady) text += "  * not steady yet: the summary states what is left\n";
   return text;
 }

@@ -129,11 +129,13 @@ private:
     if (conducted < attempts.size()) {
       reading.flags.push_back(of_all(conducted, attempts.size()) + " activations of " + supply.from +
                               " conducted to " + label_ + ": its rate is not the rate of " + supply.from);
+      reading.is_selected = true;
     }
     const std::size_t own = within(supply.causeless, span).size();
     if (own > 0) {
       reading.flags.push_back(of_all(own, reading.n_beats) + " activations of " + label_ +
                               " were not conducted from " + supply.from + " (escape or premature)");
+      reading.is_selected = true;
     }
   }
 

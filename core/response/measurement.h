@@ -22,6 +22,7 @@ struct Reading {
   std::size_t n_values = 0; ///< what the value is the mean or median of
   std::optional<double> limit;
   std::string limit_side;
+  bool is_selected = false; ///< as Response::is_selected
   std::vector<std::string> flags;
 };
 

@@ -69,7 +69,7 @@ public:
       reading.absence = Reading::Absence::no_samples;
       reading.flags.push_back(of_all(0, attempts.size()) + " activations of " + from_ +
                               " conducted: too few to say complete block");
-    } else if (is_none || blocked * 2 > attempts.size()) {
+    } else if (is_none || blocked > 0) {
       censor(reading, attempts.size(), delays_ms.size());
     } else {
       read_delay(reading, delays_ms, attempts.size());
@@ -206,6 +206,7 @@ private:
     set_median(reading, delays_ms);
     reading.n_beats = delays_ms.size();
     if (delays_ms.size() < all) {
+      reading.is_selected = true;
       reading.flags.push_back("conducted beats only: " + of_all(delays_ms.size(), all) + " activations of " +
                               from_ + " conducted: a delay of conducted beats alone is biased low");
     }

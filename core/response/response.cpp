@@ -79,6 +79,7 @@ private:
     row.n_beats = reading.n_beats;
     row.limit = reading.limit;
     row.limit_side = reading.limit_side;
+    row.is_selected = reading.is_selected;
     row.flags.insert(row.flags.end(), reading.flags.begin(), reading.flags.end());
     switch (reading.absence) {
     case Reading::Absence::no_beat:

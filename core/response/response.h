@@ -30,8 +30,10 @@ struct Response {
   std::size_t n_beats = 0;
   Seconds window_start, window_end;
   Status status = Status::ok;
-  std::optional<double> limit;    ///< for censored, and for a rate that is arrested
-  std::string limit_side;         ///< "at_least" or "at_most"
+  std::optional<double> limit; ///< for censored, and for a rate that is arrested
+  std::string limit_side;      ///< "at_least" or "at_most"
+  /// Read from conducted beats while others were blocked, or of a chamber that was not driven beat by beat.
+  bool is_selected = false;
   std::vector<std::string> flags; ///< in words, for the summary
 };
 
@@ -121,7 +123,7 @@ struct Settings {
 /// of the larger part); `unreadable` also for a pathway without an attempt whose channels beat, and for a
 /// delay of none conducted out of too few attempts to say block; `arrested` without a beat (limit for the
 /// rate: at_most 60/T, T the longest silence of the window that nothing lost breaks, for a beat may lie in a
-/// hole); `censored` for delay and velocity where complete block holds most of the window's attempts (limit:
+/// hole); `censored` for delay and velocity where complete block stands in the window (limit:
 /// the longest conducted delay of the whole recording, a convention) and for the rate with a single beat (T
 /// as before); `not_steady` where the last three equal windows still drift (plateau.h) or a silence ends or
 /// begins the window; otherwise `ok`. Whatever else weakens a value stands in its flags, in words; the flag

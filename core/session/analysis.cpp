@@ -117,9 +117,7 @@ private:
                      "pathway \"" + entry.label + "\" runs between channels that the session does not list",
                      "name two labels of channels"};
       }
-      auto paired =
-          conduction::pair(entry.label, {&out_.activations[*from], out_.channels[*from].role},
-                           {&out_.activations[*to], out_.channels[*to].role}, in_.settings.conduction);
+      auto paired = conduction::pair(entry.label, electrode(*from), electrode(*to), in_.settings.conduction);
       if (!paired) return paired.error();
       const auto distance = entry.distance_mm ? std::optional(millimetres(*entry.distance_mm)) : std::nullopt;
       const auto facts = conduction_facts(*paired, distance);
@@ -127,6 +125,11 @@ private:
       out_.pathways.push_back(std::move(paired).value());
     }
     return std::nullopt;
+  }
+
+  [[nodiscard]] conduction::Electrode electrode(std::size_t i) const {
+    const Channel& channel = out_.channels[i];
+    return {&out_.activations[i], channel.role, channel.time_base().end() + channel.skew};
   }
 
   /// First channel of a role, in the session's order.

@@ -15,6 +15,7 @@ struct CurveData {
   const Response* first = nullptr; ///< for the labels
   std::vector<pharmacology::CurvePoint> measured;
   std::vector<pharmacology::CensoredPoint> censored;
+  bool has_selected = false;
 };
 
 std::vector<CurveData> gather(const response::Responses& responses) {
@@ -28,7 +29,10 @@ std::vector<CurveData> gather(const response::Responses& responses) {
     }
     CurveData& data = curves.back();
     const bool measured = row.status == Status::ok || row.status == Status::not_steady;
-    if (measured && row.value) data.measured.push_back({row.concentration, *row.value, 1.0});
+    if (measured && row.value) {
+      data.measured.push_back({row.concentration, *row.value, 1.0});
+      data.has_selected = data.has_selected || row.is_selected;
+    }
     const bool limited =
         (row.status == Status::censored || row.status == Status::arrested) && row.limit.has_value();
     if (limited) {
@@ -38,6 +42,15 @@ std::vector<CurveData> gather(const response::Responses& responses) {
     }
   }
   return curves;
+}
+
+/// Keeps the order of the closed list.
+void add_flag(pharmacology::CurveFit& fit, std::string_view flag) {
+  std::vector<std::string> ordered;
+  for (const auto& meaning : pharmacology::flag_meanings()) {
+    if (meaning.flag == flag || fit.has_flag(meaning.flag)) ordered.emplace_back(meaning.flag);
+  }
+  fit.flags = ordered;
 }
 
 FittedCurve labelled(const CurveData& data, const std::string& preparation) {
@@ -61,9 +74,11 @@ std::vector<FittedCurve> fit_curves(const response::Responses& responses, const 
   parallel_for(curves.size(), threads, [&](std::size_t i) {
     main[i] = labelled(curves[i], preparation);
     main[i].fit = pharmacology::fit_curve(curves[i].measured, model, options);
+    if (curves[i].has_selected) add_flag(main[i].fit, pharmacology::flags::kSelectedBeats);
     if (curves[i].censored.empty()) return;
     second[i] = labelled(curves[i], preparation);
     second[i].fit = pharmacology::fit_censored(curves[i].measured, curves[i].censored, model, options);
+    if (curves[i].has_selected) add_flag(second[i].fit, pharmacology::flags::kSelectedBeats);
   });
   std::vector<FittedCurve> fits = main;
   for (std::size_t i = 0; i < curves.size(); ++i) {

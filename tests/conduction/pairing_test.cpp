@@ -483,7 +483,7 @@ TEST_CASE("cycles with a loss in them say nothing of the control delay", "[pairi
   std::vector<activation::Unreadable> losses;
   for (std::size_t i = 0; i < 100; ++i) {
     const double t = 200.0 * static_cast<double>(i);
-    const bool lossy = i < 60;
+    const bool lossy = i < 80;
     if (lossy && i % 2 == 0) losses.push_back({{milliseconds(t + 40.0), milliseconds(t + 240.0)}, "noise"});
     if (!lossy || i % 2 == 0) a.push_back(t);
     if (!lossy || i % 2 == 1) v.push_back(t + 60.0);

@@ -152,14 +152,20 @@ TEST_CASE("an escape rhythm under complete block is a measured rate, flagged in 
   CHECK_FALSE(read(heart, "delay:AV").front().limit.has_value()); // nothing ever conducted
 }
 
-TEST_CASE("block that takes most of the window censors, a short run of it is flagged", "[response]") {
-  // Window 270 to 300 s, 60 beats. Blocked from 280 s on: 40 of 60. From 290 s on: 20 of 60.
-  for (const auto& [from, status] : {std::pair{280.0, Status::censored}, std::pair{290.0, Status::ok}}) {
+TEST_CASE("complete block anywhere in the window censors the delay, a single dropped beat is flagged",
+          "[response]") {
+  // Window 270 to 300 s, 60 beats; blocked from 290 s on: 20 in a row. Or one of them at 299.5 s.
+  for (const auto& [from, status] : {std::pair{290.0, Status::censored}, std::pair{299.5, Status::ok}}) {
     auto attempts = beats(0, from, 0.5, {60});
     append(attempts, beats(from, 300, 0.5, {-1}));
     const auto row = read(heart_of(attempts, plan_of({0}, 300)), "delay:AV").front();
     CHECK(row.status == status);
+    CHECK(row.is_selected == (status == Status::ok));
     CHECK(says(row, "activations of RA conducted"));
+    if (status != Status::censored) continue;
+    CHECK_FALSE(row.value.has_value());
+    CHECK_THAT(*row.limit, WithinRel(60.0, 1e-9));
+    CHECK(row.limit_side == "at_least");
   }
 }
 
