@@ -131,6 +131,24 @@ void check_beats_and_delays(const Totals& totals) {
   }
 }
 
+/// The simulated heart fluctuates about its long-run response: a window of 30 s scatters by up to 2 % in rate
+/// and delay and 3 % in force (SD). In Wenckebach the window holds few groups: their number is a matter of
+/// chance.
+void check_responses_and_rhythm(const std::string& kind, const truth::SessionScore& score) {
+  REQUIRE(score.responses.size() >= 18);
+  for (const auto& response : score.responses) {
+    CAPTURE(kind, response.measure, response.concentration, response.status, response.relative_error);
+    const bool read = response.status == "ok" || response.status == "not_steady";
+    CHECK(read == (response.true_status == "ok"));
+    CHECK(std::abs(response.relative_error) <= 0.10);
+  }
+  for (const auto& entry : score.rhythm) {
+    CAPTURE(kind, entry.first, entry.second.true_seconds, entry.second.seconds);
+    CHECK(std::abs(entry.second.seconds - entry.second.true_seconds) <=
+          0.01 * entry.second.true_seconds + 0.5);
+  }
+}
+
 } // namespace
 
 TEST_CASE("the sample sessions: beats within 1 ms, delays within 0.3 ms, pEC50 within 0.10", "[truth]") {
@@ -142,6 +160,8 @@ TEST_CASE("the sample sessions: beats within 1 ms, delays within 0.3 ms, pEC50 w
   const Totals totals = add_up(scores);
   print(totals);
   check_beats_and_delays(totals);
+  for (std::size_t i = 0; i < scores.size(); ++i)
+    check_responses_and_rhythm(kKinds[i], scores[i]);
   for (const auto& entry : totals.curves) {
     CAPTURE(entry.first);
     REQUIRE(entry.second.front().estimated);

@@ -81,6 +81,24 @@ CurveScore score_curve(const simulation::TrueCurve& truth, const std::vector<ses
   return score;
 }
 
+std::vector<ResponseScore> score_responses(const session::SessionResult& result,
+                                           const simulation::Truth& truth) {
+  std::vector<ResponseScore> scores;
+  for (const auto& expected : truth.responses) {
+    for (const auto& row : result.responses.rows) {
+      const bool same =
+          row.curve == expected.curve && row.measure == expected.measure &&
+          std::abs(row.concentration.value() - expected.concentration) <= 1e-9 * expected.concentration;
+      if (!same) continue;
+      ResponseScore score{expected.measure, expected.concentration, expected.status,
+                          response::name_of(row.status), 0.0};
+      if (expected.value && row.value) score.relative_error = *row.value / *expected.value - 1.0;
+      scores.push_back(score);
+    }
+  }
+  return scores;
+}
+
 } // namespace
 
 double BeatScore::sensitivity() const {
@@ -106,6 +124,11 @@ SessionScore score(const session::SessionResult& result, const simulation::Truth
   for (const auto& curve : truth.curves) {
     if (curve.holds) scores.curves.push_back(score_curve(curve, result.curves));
   }
+  scores.responses = score_responses(result, truth);
+  for (const auto& episode : truth.rhythm)
+    scores.rhythm[episode.kind].true_seconds += (episode.end - episode.start).value();
+  for (const auto& episode : result.rhythm.episodes)
+    scores.rhythm[episode.kind].seconds += (episode.end - episode.start).value();
   return scores;
 }
 

@@ -2,6 +2,7 @@
 #pragma once
 
 #include <cstddef>
+#include <map>
 #include <string>
 #include <vector>
 
@@ -40,7 +41,22 @@ struct CurveScore {
   bool covered = false; ///< the interval holds the truth (an open side holds everything beyond)
 };
 
+/// One step and measure: what was read against what the heart would show there in the long run.
+struct ResponseScore {
+  std::string measure;
+  double concentration = 0.0;
+  std::string true_status, status;
+  double relative_error = 0.0; ///< of the value, where both are there
+};
+
+/// Total time of one kind of rhythm.
+struct RhythmScore {
+  double true_seconds = 0.0, seconds = 0.0;
+};
+
 struct SessionScore {
+  std::vector<ResponseScore> responses;
+  std::map<std::string, RhythmScore> rhythm;
   std::vector<BeatScore> beats;
   std::vector<DelayScore> delays;
   std::vector<CurveScore> curves;
