@@ -47,6 +47,8 @@ std::optional<Error> RhythmSettings::check() const {
   };
   if (!(first_degree_ratio > 1.0))
     return wrong("rhythm.first_degree_ratio must exceed 1", "set it to 1.5, for example");
+  if (!(reference_period > Seconds(0.0)))
+    return wrong("rhythm.reference_period_s must exceed 0", "leave it out for 60 s");
   if (!(pause_ratio > 1.0)) return wrong("rhythm.pause_ratio must exceed 1", "set it to 1.7, for example");
   if (!(arrest_shortest > Seconds(0.0)) || !(arrest_cycles > 0.0)) {
     return wrong("rhythm.arrest_shortest_s and rhythm.arrest_cycles must exceed 0",

@@ -4,6 +4,7 @@
 #include <algorithm>
 
 #include "base/number_text.h"
+#include "document/text_place.h"
 
 namespace chronodrome::session {
 namespace {
@@ -39,8 +40,7 @@ Result<ChosenSettings> settings_of(const document::SessionFile& session) {
     const auto row =
         std::find_if(rows.begin(), rows.end(), [&](const SettingRow& r) { return r.key == key; });
     if (row == rows.end()) {
-      chosen.warnings.push_back({session.path,
-                                 {},
+      chosen.warnings.push_back({session.path, document::place_of(session.as_read, key),
                                  "analysis key \"" + key + "\" is not known and changes nothing",
                                  "resources/formats/settings.md lists the keys"});
       continue;
@@ -48,9 +48,7 @@ Result<ChosenSettings> settings_of(const document::SessionFile& session) {
     if (!row->set(chosen.settings, entry.second)) {
       const std::string expected =
           row->allowed.empty() ? "a number" + (row->unit.empty() ? "" : " in " + row->unit) : row->allowed;
-      return Error{ErrorCode::bad_value,
-                   session.path,
-                   {},
+      return Error{ErrorCode::bad_value, session.path, document::place_of(session.as_read, key),
                    "analysis key \"" + key + "\" is \"" + text_of(entry.second) + "\", expected " + expected,
                    "correct it or leave it out"};
     }
@@ -65,6 +63,8 @@ Result<ChosenSettings> settings_of(const document::SessionFile& session) {
   chosen.settings.response.complete_block_time = chosen.settings.rhythm.complete_block_time;
   if (auto error = first_fault(chosen.settings)) {
     error->file = session.path;
+    // A range error begins with the key.
+    error->place = document::place_of(session.as_read, error->what.substr(0, error->what.find(' ')));
     return *error;
   }
   return chosen;

@@ -1,6 +1,8 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "session/channels.h"
 
+#include "document/text_place.h"
+
 namespace chronodrome::session {
 namespace {
 
@@ -62,9 +64,7 @@ Result<ChannelSet> channels_of(const document::SessionFile& session,
   for (const ChannelEntry& entry : session.channels) {
     const recording::Signal* signal = recording->find(entry.source);
     if (signal == nullptr) {
-      return Error{ErrorCode::bad_value,
-                   session.path,
-                   {},
+      return Error{ErrorCode::bad_value, session.path, document::place_of(session.as_read, entry.source),
                    "channel \"" + entry.label + "\" wants the source \"" + entry.source +
                        "\", and the recording holds " + sources_in(*recording),
                    "correct the source in the session"};
