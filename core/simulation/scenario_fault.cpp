@@ -75,6 +75,9 @@ private:
             "only an edf+ file carries annotations", "set \"kind\" to \"edf+\" or \"protocol\" to \"file\"");
     require(file.gaps.empty() || file.kind != FileKind::edf, {"recording", "gaps"},
             "a plain edf file cannot have gaps", "set \"kind\" to \"edf+\" or \"csv\"");
+    require(file.gaps.empty() || file.kind != FileKind::csv || !file.csv.time_column.value_or("").empty(),
+            {"recording", "gaps"}, "a csv file without a time column cannot show its gaps",
+            "set \"time_column\" of \"csv\" to a name, or \"kind\" to \"edf+\"");
     require(file.csv.delimiter != file.csv.decimal, {"recording", "csv", "delimiter"},
             "the delimiter is also the decimal mark", "choose ; as the delimiter");
     double samples = 0.0;

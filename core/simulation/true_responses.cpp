@@ -214,7 +214,8 @@ private:
     if (kind_ == "conducted") return crosses_node() ? settled.conducted : 1.0;
     if (pathway_ != nullptr) {
       const Seconds delay = lag_difference() + (crosses_node() ? *settled.delay : Seconds(0.0));
-      return kind_ == "delay" ? in_milliseconds(delay) : std::abs(*pathway_->distance_mm * 1e-3 / delay.value());
+      return kind_ == "delay" ? in_milliseconds(delay)
+                              : std::abs(*pathway_->distance_mm * 1e-3 / delay.value());
     }
     if (kind_ == "flow") return channel_->baseline;
     return mechanical_basal() * conditions_.effects().settled_ratio(mechanical_target(), bath);
