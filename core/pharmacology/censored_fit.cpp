@@ -9,6 +9,7 @@
 #include "numerics/distributions.h"
 #include "pharmacology/censored_likelihood.h"
 #include "pharmacology/hill_fit.h"
+#include "pharmacology/response_scale.h"
 #include "pharmacology/shape.h"
 #include "pharmacology/wald.h"
 
@@ -150,7 +151,7 @@ private:
     const bool above = m(2) > levels_.highest_log() + kFarOut, below = m(2) < levels_.lowest_log() - kFarOut;
     if (!maximum_.converged || above || below) return runs_away(above, below);
     set("emax", wald(m(1), error(b), t));
-    if (!fixed_nh_) set("nh", wald(std::exp(m(3)), scaled(error(b + 2), std::exp(m(3))), t));
+    if (!fixed_nh_) set("nh", wald_of_log(m(3), error(b + 2), t));
     set("effect_max", wald(m(1) - m(0), effect_error(b), t));
     if (heavily_censored()) {
       add_flag(fit_, flags::kHeavilyCensored,
@@ -185,10 +186,6 @@ private:
     if (maximum_.covariance.size() == 0) return std::nullopt;
     const numerics::Matrix& c = maximum_.covariance;
     return std::sqrt(c(0, 0) + c(1, 1) - 2.0 * c(0, 1));
-  }
-
-  static std::optional<double> scaled(std::optional<double> error, double factor) {
-    return error ? std::optional(*error * factor) : std::nullopt;
   }
 
   [[nodiscard]] bool heavily_censored() const {
@@ -261,7 +258,17 @@ CurveFit fit_censored(std::span<const CurvePoint> measured, std::span<const Cens
   } else if (!all_usable(usable, censored)) {
     add_flag(fit, flags::kDeclined, "a concentration, weight or limit cannot be used");
   } else {
-    CensoredFitter(usable, censored, options, fixed_nh, fit).run();
+    double largest = largest_response(usable, options);
+    for (const CensoredPoint& point : censored)
+      largest = std::max(largest, std::abs(point.limit));
+    const ResponseScale scale(largest);
+    std::vector<CensoredPoint> limits(censored.begin(), censored.end());
+    for (CensoredPoint& point : limits)
+      point.limit = scale.down(point.limit);
+    const std::vector<CurvePoint> scaled = scale.down(usable);
+    const FitOptions scaled_options = scale.down(options);
+    CensoredFitter(scaled, limits, scaled_options, fixed_nh, fit).run();
+    scale.restore(fit, model, usable.size());
   }
   sort_flags(fit);
   return fit;

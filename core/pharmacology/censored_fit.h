@@ -23,15 +23,15 @@ struct CensoredPoint {
 /// errors of one size. `likelihood` is "censored".
 /// `model`: hill or hill_unit_slope; other models are declined. Estimates have standard errors from the
 /// observed information and t limits with (measured points - parameters) degrees of freedom (ci_method
-/// "wald"): read them together with the main fit, whose profile says whether a plateau was reached at all.
-/// `fit`: residual_sd is the likelihood's own (not corrected for degrees of freedom), rss that of the
-/// measured points, aicc from the likelihood. Declined: fewer measured points than parameters + 1, fewer
-/// distinct concentrations (limits count) than parameters + 1, all measured responses on the curve, no
-/// censored point. `no_response`: likelihood ratio against a constant with P >= response_level.
-/// `heavily_censored`: more than a third of the points whose fitted response lies between 20 and 80 % of the
-/// effect are limits; pec50 is then missing. Where the likelihood has no finite maximum the plateau's flag is
-/// set and pec50, emax and nh are missing. Accuracy: within 1e-4 of the standard error. Source: likelihood of
-/// limited responses, Tobin J (1958) Econometrica 26:24-36.
+/// "wald"; those of nh are taken on ln nh, so that they stay above 0): read them together with the main fit,
+/// whose profile says whether a plateau was reached at all. `fit`: residual_sd is the likelihood's own (not
+/// corrected for degrees of freedom), rss that of the measured points, aicc from the likelihood. Declined:
+/// fewer measured points than parameters + 1, fewer distinct concentrations (limits count) than parameters +
+/// 1, all measured responses on the curve, no censored point. `no_response`: likelihood ratio against a
+/// constant with P >= response_level. `heavily_censored`: more than a third of the points whose fitted
+/// response lies between 20 and 80 % of the effect are limits; pec50 is then missing. Where the likelihood
+/// has no finite maximum the plateau's flag is set and pec50, emax and nh are missing. Accuracy: within 1e-4
+/// of the standard error. Source: likelihood of limited responses, Tobin J (1958) Econometrica 26:24-36.
 CurveFit fit_censored(std::span<const CurvePoint> measured, std::span<const CensoredPoint> censored,
                       Model model, const FitOptions& options = {});
 

@@ -9,6 +9,7 @@
 #include "base/number_text.h"
 #include "pharmacology/hill_fit.h"
 #include "pharmacology/levels.h"
+#include "pharmacology/response_scale.h"
 #include "pharmacology/shape.h"
 
 namespace chronodrome::pharmacology {
@@ -95,7 +96,8 @@ CurveFit fit_curve(std::span<const CurvePoint> points, Model model, const FitOpt
       return finish(declined(fit, "a weight is not above 0"));
     }
   }
-  const Levels levels = gather(usable);
+  const ResponseScale scale(largest_response(usable, options));
+  const Levels levels = gather(scale.is_needed() ? scale.down(usable) : usable);
   const std::size_t fitted = static_cast<std::size_t>(parameter_count(model)) - (options.fixed_nh ? 1 : 0) -
                              (options.fixed_basal ? 1 : 0);
   const std::string have =
@@ -107,7 +109,8 @@ CurveFit fit_curve(std::span<const CurvePoint> points, Model model, const FitOpt
   }
   const std::size_t enough = fitted > 4 ? 10 : 6;
   if (fitted > 2 && levels.size() < enough) add_flag(fit, flags::kFewPoints, have);
-  run(levels, model, options, fit);
+  run(levels, model, scale.down(options), fit);
+  scale.restore(fit, model, fit.n_points);
   return finish(fit);
 }
 

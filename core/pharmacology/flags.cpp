@@ -20,14 +20,24 @@ constexpr std::array kMeanings{
         "report that no concentration-related response was detected; do not print an EC50"},
     FlagMeaning{flags::kNotConverged, "the search ended without reaching a minimum; no interval is given",
                 "look at the points; try a model with fewer parameters"},
-    FlagMeaning{flags::kNotSeparable,
-                "two or more parameters change the curve in the same way (condition number above 1e8, an "
-                "asymmetry at its limit, or two components that are one)",
-                "trust the curve, not the single parameters; fix one of them or take a simpler model"},
-    FlagMeaning{flags::kSlopeUndetermined,
-                "the Hill coefficient is outside 0.2 to 10 or has no finite optimum: the response changes "
-                "between two neighbouring concentrations, or hardly at all",
-                "read the EC50 as its interval; add concentrations in between"},
+    FlagMeaning{
+        flags::kSelectedBeats,
+        "responses of this curve were read from conducted beats only while others were blocked (or while a "
+        "slower pacemaker drove the chamber): they are survivors, not the drug's effect on every beat",
+        "read the conducted share and the atrial rate beside it; leave those steps out, or report the "
+        "censored fit"},
+    FlagMeaning{
+        flags::kNotSeparable,
+        "two or more parameters change the curve in the same way (condition number above 1e8, an "
+        "asymmetry at its limit, two components that are one, or one without weight); where many sets of "
+        "parameters fit alike, all of them are missing",
+        "trust the curve, not the single parameters; fix one of them or take a simpler model"},
+    FlagMeaning{
+        flags::kSlopeUndetermined,
+        "the Hill coefficient is outside 0.2 to 10, has no finite optimum, or has no upper or lower limit "
+        "although both plateaus were reached: the response changes between two neighbouring "
+        "concentrations, or hardly at all",
+        "read the EC50 as its interval; add concentrations in between"},
     FlagMeaning{
         flags::kUpperPlateauOpen,
         "the plateau at high concentration was not reached: the EC50, the maximum or both have no limit "

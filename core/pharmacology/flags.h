@@ -20,6 +20,8 @@ namespace flags {
 inline constexpr std::string_view kDeclined = "declined";
 inline constexpr std::string_view kNoResponse = "no_response";
 inline constexpr std::string_view kNotConverged = "not_converged";
+/// Set by the caller, who knows how the responses were read; fit_curve() and fit_censored() never set it.
+inline constexpr std::string_view kSelectedBeats = "selected_beats";
 inline constexpr std::string_view kNotSeparable = "not_separable";
 inline constexpr std::string_view kSlopeUndetermined = "slope_undetermined";
 inline constexpr std::string_view kUpperPlateauOpen = "upper_plateau_open";

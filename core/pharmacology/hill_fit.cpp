@@ -140,11 +140,11 @@ private:
     SeparableProblem problem = hill_problem(levels_, shape_, held_);
     const numerics::Matrix jacobian = problem.jacobian(optimum_.minimum, held_.free_shape());
     const Covariance covariance(jacobian, *fit_.residual_sd);
-    fit_.condition = covariance.condition();
-    if (covariance.condition() > kNotSeparable) {
+    if (std::isfinite(covariance.condition())) fit_.condition = covariance.condition();
+    if (!(covariance.condition() <= kNotSeparable)) {
       add_flag(fit_, flags::kNotSeparable,
-               "the parameters cannot be told apart from these points (condition number " +
-                   number_text(covariance.condition(), 2) + ")");
+               "the parameters cannot be told apart from these points" +
+                   (fit_.condition ? " (condition number " + number_text(*fit_.condition, 2) + ")" : ""));
     }
     Eigen::Index next = 0;
     if (!held_.basal) target(HillParameter::basal).se = covariance.error(next++);
@@ -247,7 +247,9 @@ private:
   void flag_slope() {
     if (held_.nh) return;
     const auto estimate = target(HillParameter::log_slope).estimate;
-    if (estimate && std::exp(*estimate) >= kLeastSlope && std::exp(*estimate) <= kMostSlope) return;
+    if (estimate && std::exp(*estimate) >= kLeastSlope && std::exp(*estimate) <= kMostSlope) {
+      return flag_open_slope();
+    }
     std::string where;
     if (optimum_.kind == HillOptimum::Kind::step) {
       const HillLimits::Step& step = limits_.step();
@@ -257,6 +259,16 @@ private:
                           : ": the response changes between " + low + " and " + high + " mol/L";
     }
     add_flag(fit_, flags::kSlopeUndetermined, "the slope is not determined by these concentrations" + where);
+  }
+
+  /// An open plateau leaves the slope open as well and has said so; else the slope itself is what is open.
+  void flag_open_slope() {
+    const Target& slope = target(HillParameter::log_slope);
+    if (!slope.profiled || (slope.low && slope.high)) return;
+    if (fit_.has_flag(flags::kUpperPlateauOpen) || fit_.has_flag(flags::kLowerPlateauOpen)) return;
+    const std::string side = slope.low ? "upper limit: steeper" : "lower limit: shallower";
+    add_flag(fit_, flags::kSlopeUndetermined,
+             "the slope has no " + side + " curves fit these points as well");
   }
 
   void flag_range() {

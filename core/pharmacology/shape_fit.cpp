@@ -6,15 +6,30 @@
 #include <limits>
 
 #include "base/number_text.h"
-#include "pharmacology/hill_problem.h"
+#include "pharmacology/model_comparison.h"
 
 namespace chronodrome::pharmacology {
+
+namespace {
+
+constexpr double kBelievedLevel = 0.05; // of the F test for a second component, where the search failed
+
+} // namespace
 
 ShapeFit::ShapeFit(const Levels& levels, const FitOptions& options, SeparableProblem& problem,
                    std::vector<std::size_t> free, CurveFit& fit)
     : levels_(levels), options_(options), problem_(problem), free_(std::move(free)), fit_(fit) {}
 
-bool ShapeFit::run(const std::vector<std::vector<double>>& starts) {
+bool ShapeFit::is_no_better_than(const HillConstraints& one_component) const {
+  const HillOptimum one = find_hill_optimum(levels_, HillShape(), one_component,
+                                            HillLimits(levels_, one_component.nh, one_component.basal));
+  const int df = static_cast<int>(levels_.n_points) - one_component.parameters();
+  const auto better = nested_test(one.rss, df, minimum_.rss, fit_.df);
+  return !better || better->p >= kBelievedLevel;
+}
+
+bool ShapeFit::run(const std::vector<std::vector<double>>& starts,
+                   const std::optional<HillConstraints>& one_component) {
   minimum_.rss = std::numeric_limits<double>::infinity();
   for (const std::vector<double>& start : starts) {
     const SeparableMinimum found = problem_.descend(start, free_);
@@ -28,17 +43,26 @@ bool ShapeFit::run(const std::vector<std::vector<double>>& starts) {
   const bool scatter = describe_scatter(levels_, options_, minimum_.rss, p, fit_);
   fit_.converged = summary.converged();
   fit_.iterations = before + summary.iterations;
+  const Covariance covariance(problem_.jacobian(minimum_, free_), *fit_.residual_sd);
+  const bool separable = covariance.condition() <= kNotSeparable;
+  if (std::isfinite(covariance.condition())) fit_.condition = covariance.condition();
   if (!fit_.converged) {
-    add_flag(fit_, flags::kNotConverged,
-             "the search ended after " + std::to_string(fit_.iterations) + " steps without a minimum");
+    // Two components that became one, or one that lost its weight, leave a valley without an end: that, not
+    // the search, is why there is no minimum.
+    if (!separable || (one_component && is_no_better_than(*one_component))) {
+      add_flag(fit_, flags::kNotSeparable,
+               "the parameters cannot be told apart from these points: many sets of them fit alike, and no "
+               "single one is given");
+    } else {
+      add_flag(fit_, flags::kNotConverged,
+               "the search ended after " + std::to_string(fit_.iterations) + " steps without a minimum");
+    }
     return false;
   }
-  const Covariance covariance(problem_.jacobian(minimum_, free_), *fit_.residual_sd);
-  fit_.condition = covariance.condition();
-  if (covariance.condition() > kNotSeparable) {
+  if (!separable) {
     add_flag(fit_, flags::kNotSeparable,
-             "the parameters cannot be told apart from these points (condition number " +
-                 number_text(covariance.condition(), 2) + ")");
+             "the parameters cannot be told apart from these points" +
+                 (fit_.condition ? " (condition number " + number_text(*fit_.condition, 2) + ")" : ""));
   }
   if (scatter) covariance_ = covariance;
   t_ = two_sided_t(options_, fit_.df);

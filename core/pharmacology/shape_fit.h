@@ -4,6 +4,7 @@
 #include <vector>
 
 #include "pharmacology/hill_fit.h"
+#include "pharmacology/hill_problem.h"
 #include "pharmacology/separable.h"
 #include "pharmacology/wald.h"
 
@@ -17,7 +18,11 @@ public:
            std::vector<std::size_t> free, CurveFit& fit);
 
   /// False if the fit ended as "no response" or without a minimum; then nothing more is to be filled.
-  bool run(const std::vector<std::vector<double>>& starts);
+  /// `one_component`: the Hill curve that the model becomes where its two components are one. A search
+  /// without a minimum is "not separable" where the parameters are (condition number) or where the model is
+  /// not significantly better than that curve.
+  bool run(const std::vector<std::vector<double>>& starts,
+           const std::optional<HillConstraints>& one_component = std::nullopt);
 
   [[nodiscard]] const SeparableMinimum& minimum() const { return minimum_; }
   /// Standard error of a function of coefficients (first) and free shape parameters; missing for exact data.
@@ -26,6 +31,8 @@ public:
   void set(const char* name, const Estimate& value);
 
 private:
+  [[nodiscard]] bool is_no_better_than(const HillConstraints& one_component) const;
+
   const Levels& levels_;
   const FitOptions& options_;
   SeparableProblem& problem_;

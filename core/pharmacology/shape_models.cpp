@@ -82,7 +82,7 @@ void fit_biphasic(const Levels& levels, const FitOptions& options, CurveFit& fit
   if (!options.fixed_basal) columns.insert(columns.begin(), kOne);
   SeparableProblem problem(levels, shape, columns, {options.fixed_basal.value_or(0.0), {}, {}});
   ShapeFit work(levels, options, problem, {0, 2}, fit);
-  if (!work.run(pair_starts(levels, problem, {0.0}, 5))) return;
+  if (!work.run(pair_starts(levels, problem, {0.0}, 5), HillConstraints{1.0, options.fixed_basal})) return;
   const SeparableMinimum& m = work.minimum();
   const std::size_t b = options.fixed_basal ? 0 : 1; // coefficients before the two effects
   const double basal = options.fixed_basal ? *options.fixed_basal : m.coefficients[0];
@@ -123,7 +123,7 @@ void fit_bell(const Levels& levels, const FitOptions& options, CurveFit& fit) {
   const TwoHillShape shape;
   SeparableProblem problem(levels, shape, {kOne, kFirst, kSecond});
   ShapeFit work(levels, options, problem, {0, 1, 2, 3}, fit);
-  if (!work.run(pair_starts(levels, problem, {std::log(0.8), std::log(1.6)}, 8))) return;
+  if (!work.run(pair_starts(levels, problem, {std::log(0.8), std::log(1.6)}, 8), HillConstraints{})) return;
   const SeparableMinimum& m = work.minimum();
   const bool swapped = m.theta[0] > m.theta[2];
   const std::size_t first = swapped ? 2 : 0, second = swapped ? 0 : 2;

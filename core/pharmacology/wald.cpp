@@ -38,6 +38,17 @@ Estimate wald(double estimate, std::optional<double> se, double t) {
   return result;
 }
 
+Estimate wald_of_log(double log_value, std::optional<double> se, double t) {
+  const auto back = [](const std::optional<double>& value) -> std::optional<double> {
+    const double result = value ? std::exp(*value) : 0.0;
+    return std::isfinite(result) && result > 0.0 ? std::optional(result) : std::nullopt;
+  };
+  const Estimate log = wald(log_value, se, t);
+  Estimate result{back(log.estimate), {}, back(log.ci_low), back(log.ci_high), log.ci_method};
+  if (se && result.estimate && std::isfinite(*se * *result.estimate)) result.se = *se * *result.estimate;
+  return result;
+}
+
 Estimate antilog(const Estimate& negative_log10) {
   const auto back = [](const std::optional<double>& value) -> std::optional<double> {
     if (!value) return std::nullopt;

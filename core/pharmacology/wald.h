@@ -29,6 +29,10 @@ private:
 /// estimate +- t se, method "wald"; without an error only the estimate.
 Estimate wald(double estimate, std::optional<double> se, double t);
 
+/// A number above 0 estimated by its logarithm: exp(log_value -+ t se), so that no limit is below 0; the
+/// error is that of the number, exp(log_value) se. A limit without a finite value above 0 is missing.
+Estimate wald_of_log(double log_value, std::optional<double> se, double t);
+
 /// 10^-value with limits, no error: concentrations from their negative logarithms.
 Estimate antilog(const Estimate& negative_log10);
 

@@ -1,9 +1,13 @@
 // Chronodrome, GPL-3.0-or-later.
 #include <catch2/catch.hpp>
 
+#include <cmath>
+
+#include "numerics/distributions.h"
 #include "pharmacology/censored_fit.h"
 #include "pharmacology/censored_likelihood.h"
 #include "pharmacology/curves.h"
+#include "pharmacology/wald.h"
 
 using namespace chronodrome;
 using namespace chronodrome::pharmacology;
@@ -76,6 +80,32 @@ TEST_CASE("a limit far below the curve says nothing", "[pharmacology][censored]"
   CHECK_THAT(ml.find("pec50")->estimate.value(), WithinRel(ls.find("pec50")->estimate.value(), 1e-8));
   CHECK_THAT(ml.find("nh")->estimate.value(), WithinRel(ls.find("nh")->estimate.value(), 1e-7));
   CHECK_THAT(ml.residual_sd.value(), WithinRel(std::sqrt(ls.rss.value() / 10.0), 1e-7));
+}
+
+TEST_CASE("a Hill coefficient from few points has limits above 0", "[pharmacology][censored]") {
+  // One point on the slope of the curve: the error of nh is larger than half of nh.
+  const std::vector<CurvePoint> measured =
+      points({0, 1e-9, 1e-8, 1e-7, 3e-7, 1e-6}, {60.0, 75.0, 50.0, 70.0, 97.0, 140.0});
+  const std::vector<CensoredPoint> limits{{Molar(1e-5), 145.0, LimitSide::at_least}};
+  const CurveFit fit = fit_censored(measured, limits, Model::hill);
+  const Estimate& nh = *fit.find("nh");
+  REQUIRE(nh.estimate.has_value());
+  const double t = numerics::student_t_quantile(0.975, fit.df);
+  REQUIRE(t * nh.se.value() > nh.estimate.value()); // nh - t se is negative
+  CHECK(nh.ci_low.value() > 0.0);
+  // ln nh -+ t se(nh) / nh, by the chain rule.
+  CHECK_THAT(nh.ci_low.value(), WithinRel(*nh.estimate * std::exp(-t * *nh.se / *nh.estimate), 1e-12));
+  CHECK_THAT(nh.ci_high.value(), WithinRel(*nh.estimate * std::exp(t * *nh.se / *nh.estimate), 1e-12));
+  CHECK(nh.ci_method == "wald");
+}
+
+TEST_CASE("limits on a logarithm without a double are missing", "[pharmacology][censored]") {
+  const Estimate wide = wald_of_log(0.0, 1000.0, 2.0);
+  CHECK(wide.estimate == 1.0);
+  CHECK(wide.se == 1000.0);
+  CHECK_FALSE(wide.ci_low.has_value());
+  CHECK_FALSE(wide.ci_high.has_value());
+  CHECK_FALSE(wald_of_log(0.0, std::nullopt, 2.0).ci_low.has_value());
 }
 
 TEST_CASE("censored fits are declined where they cannot answer", "[pharmacology][censored]") {

@@ -70,7 +70,11 @@ TEST_CASE("a good curve has every number, its intervals and no flag", "[pharmaco
 TEST_CASE("four distinct concentrations are declined, five are fitted and flagged", "[pharmacology][fit]") {
   const std::vector<double> five{0, 1e-8, 1e-7, 1e-6, 1e-5}, four{0, 1e-8, 1e-7, 1e-6};
   const CurveFit fitted = fit_curve(points(five, {280, 270, 180, 92, 85}), Model::hill);
-  CHECK(fitted.flags == std::vector<std::string>{"few_points"});
+  // One degree of freedom: both plateaus have limits, the slope has none above.
+  CHECK(fitted.flags == std::vector<std::string>{"slope_undetermined", "few_points"});
+  CHECK_FALSE(fitted.find("nh")->ci_high.has_value());
+  for (const char* name : {"basal", "emax"})
+    CHECK((fitted.find(name)->ci_low.has_value() && fitted.find(name)->ci_high.has_value()));
   CHECK(fitted.find("pec50")->estimate.has_value());
   CHECK(fitted.df == 1);
 

@@ -102,6 +102,30 @@ TEST_CASE("a slope outside 0.2 to 10 is not believed", "[pharmacology][open]") {
   CHECK(shallow.has_flag(flags::kSlopeUndetermined));
 }
 
+TEST_CASE("a slope without an upper limit is undetermined although it has an optimum",
+          "[pharmacology][open]") {
+  // One point on the way between two plateaus: any steeper curve through it does as well.
+  const CurveFit fit = fit_curve(
+      points({0, 1e-9, 1e-8, 1e-7, 1e-6, 1e-5, 1e-4}, {280, 276, 285, 205, 104, 97, 100}), Model::hill);
+  REQUIRE(fit.converged);
+  REQUIRE(fit.find("nh")->estimate.has_value());
+  CHECK(fit.find("nh")->estimate.value() < 10.0);
+  CHECK(fit.find("nh")->ci_low.has_value());
+  CHECK_FALSE(fit.find("nh")->ci_high.has_value());
+  CHECK(fit.find("emax")->ci_low.has_value());
+  CHECK(fit.find("basal")->ci_high.has_value());
+  CHECK(fit.flags == std::vector<std::string>{"slope_undetermined"});
+  CHECK_THAT(fit.reason, Contains("no upper limit"));
+}
+
+TEST_CASE("a slope that only an open plateau leaves open is not flagged by itself", "[pharmacology][open]") {
+  const CurveFit fit = fit_curve(noisy_hill(kLow, 180, 330, 6.3, 1.0, 8.0), Model::hill);
+  REQUIRE(fit.find("nh")->estimate.has_value());
+  REQUIRE_FALSE((fit.find("nh")->ci_low.has_value() && fit.find("nh")->ci_high.has_value()));
+  CHECK(fit.has_flag(flags::kUpperPlateauOpen));
+  CHECK_FALSE(fit.has_flag(flags::kSlopeUndetermined));
+}
+
 TEST_CASE("a response at all doses alike hides its EC50 below them", "[pharmacology][open]") {
   const CurveFit fit = fit_curve(points(kLow, {200, 101, 100, 99, 100.5, 100, 99.5}), Model::hill_unit_slope);
   CHECK(fit.has_flag(flags::kLowerPlateauOpen));
