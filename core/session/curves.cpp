@@ -3,6 +3,7 @@
 
 #include "base/parallel.h"
 #include "pharmacology/censored_fit.h"
+#include "pharmacology/hill_fit.h"
 
 namespace chronodrome::session {
 namespace {
@@ -44,13 +45,11 @@ std::vector<CurveData> gather(const response::Responses& responses) {
   return curves;
 }
 
-/// Keeps the order of the closed list.
-void add_flag(pharmacology::CurveFit& fit, std::string_view flag) {
-  std::vector<std::string> ordered;
-  for (const auto& meaning : pharmacology::flag_meanings()) {
-    if (meaning.flag == flag || fit.has_flag(meaning.flag)) ordered.emplace_back(meaning.flag);
-  }
-  fit.flags = ordered;
+/// What the fit itself cannot know: where its responses came from.
+void mark_selected(pharmacology::CurveFit& fit) {
+  pharmacology::add_flag(fit, pharmacology::flags::kSelectedBeats,
+                         "some responses were read while beats were blocked or not conducted from above");
+  pharmacology::sort_flags(fit);
 }
 
 FittedCurve labelled(const CurveData& data, const std::string& preparation) {
@@ -74,11 +73,11 @@ std::vector<FittedCurve> fit_curves(const response::Responses& responses, const 
   parallel_for(curves.size(), threads, [&](std::size_t i) {
     main[i] = labelled(curves[i], preparation);
     main[i].fit = pharmacology::fit_curve(curves[i].measured, model, options);
-    if (curves[i].has_selected) add_flag(main[i].fit, pharmacology::flags::kSelectedBeats);
+    if (curves[i].has_selected) mark_selected(main[i].fit);
     if (curves[i].censored.empty()) return;
     second[i] = labelled(curves[i], preparation);
     second[i].fit = pharmacology::fit_censored(curves[i].measured, curves[i].censored, model, options);
-    if (curves[i].has_selected) add_flag(second[i].fit, pharmacology::flags::kSelectedBeats);
+    if (curves[i].has_selected) mark_selected(second[i].fit);
   });
   std::vector<FittedCurve> fits = main;
   for (std::size_t i = 0; i < curves.size(); ++i) {
