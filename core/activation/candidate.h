@@ -10,7 +10,7 @@
 
 namespace chronodrome::activation {
 
-/// A deflection as 24 points about its steepest part, without its mean, largest value 127.
+/// A deflection as 24 points about its centre, without its mean, largest value 127.
 using Shape = std::array<std::int8_t, 24>;
 
 /// A deflection that may be an activation, with all that later decisions need, so that no sample is read
@@ -18,7 +18,9 @@ using Shape = std::array<std::int8_t, 24>;
 struct Candidate {
   std::size_t run = 0;
   std::size_t peak = 0;        ///< sample of the detection function's local maximum
-  Seconds time;                ///< of the steepest part, with skew
+  Seconds time;                ///< of the centre, with skew
+  double centre_at = 0.0;      ///< sample position of the centroid of the squared slope over the deflection;
+                               ///< never jumps between flanks of equal steepness
   double fall_at = 0.0;        ///< sample position of the steepest negative slope
   double rise_at = 0.0;        ///< ... of the steepest positive slope
   double top_at = 0.0;         ///< ... of the largest positive lobe

@@ -55,8 +55,8 @@ private:
     candidate.rise_at += first;
     candidate.top_at += first;
     candidate.bottom_at += first;
-    candidate.time =
-        channel_.time_at(candidate.fall >= candidate.rise ? candidate.fall_at : candidate.rise_at);
+    candidate.centre_at += first;
+    candidate.time = channel_.time_at(candidate.centre_at);
     scan_.candidates.push_back(candidate);
   }
 

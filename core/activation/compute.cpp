@@ -2,6 +2,7 @@
 #include "activation/compute.h"
 
 #include <algorithm>
+#include <cmath>
 #include <optional>
 
 #include "activation/acceptance.h"
@@ -125,6 +126,58 @@ void add_warnings(const Pending& pending, ChannelActivations& channel, const Act
             std::to_string(channel.marks.size()) + " activations",
         "look at a few of them on the signal");
   }
+  if (pending.train.undecided > 0) {
+    add(std::to_string(pending.train.undecided) +
+            " activations fall together with those of the other chamber, and no other beats are there to "
+            "compare them with: they may be its far field",
+        "look at a few of them on the signal");
+  }
+}
+
+constexpr Seconds kTogether{2e-3};
+
+/// Share of the first channel's marks that have one of the second's within 2 ms.
+double coinciding_share(const ChannelActivations& first, const ChannelActivations& second) {
+  if (first.marks.empty()) return 0.0;
+  std::size_t found = 0;
+  std::size_t k = 0;
+  for (const Activation& mark : first.marks) {
+    while (k < second.marks.size() && second.marks[k].time < mark.time - kTogether)
+      ++k;
+    if (k < second.marks.size() && second.marks[k].time <= mark.time + kTogether) ++found;
+  }
+  return static_cast<double>(found) / static_cast<double>(first.marks.size());
+}
+
+bool share_signal(const recording::Channel& a, const recording::Channel& b) {
+  return a.recording == b.recording && a.signal == b.signal;
+}
+
+/// An atrial and a ventricular channel that show the same beats: one lead read twice, or one chamber alone.
+void warn_of_shared_beats(std::vector<Pending>& pendings, std::span<const recording::Channel> channels) {
+  const auto is_atrial = [&](std::size_t i) {
+    return channels[i].role == recording::Role::atrial || channels[i].role == recording::Role::sinus;
+  };
+  for (std::size_t a = 0; a < pendings.size(); ++a) {
+    if (!is_atrial(a) || pendings[a].error) continue;
+    for (std::size_t v = 0; v < pendings.size(); ++v) {
+      if (channels[v].role != recording::Role::ventricular || pendings[v].error) continue;
+      ChannelActivations& atrial = *pendings[a].finished;
+      ChannelActivations& ventricular = *pendings[v].finished;
+      const bool same = share_signal(channels[a], channels[v]);
+      const double share = coinciding_share(atrial, ventricular);
+      if (!same && share <= 0.5) continue;
+      const std::string names = atrial.channel + " and " + ventricular.channel;
+      const std::string what =
+          same ? names + " are one lead, which shows both chambers; each counts the beats of both"
+               : number_text(std::round(100.0 * share), 3) + " % of the marks of " + atrial.channel +
+                     " coincide with marks of " + ventricular.channel + " within 2 ms";
+      const std::string remedy = same ? "give each its own lead, or check the marks of both on the signal"
+                                      : "check on the signal whether " + names + " show both chambers";
+      for (ChannelActivations* channel : {&atrial, &ventricular})
+        channel->warnings.push_back({"", {}, "channel " + channel->channel + ": " + what, remedy});
+    }
+  }
 }
 
 std::vector<Result<ChannelActivations>> finish_all(std::vector<Pending>& pendings,
@@ -149,6 +202,7 @@ std::vector<Result<ChannelActivations>> finish_all(std::vector<Pending>& pending
     channel.quality = quality_of(pendings[i].scan, channel, agreeing);
     add_warnings(pendings[i], channel, settings);
   });
+  warn_of_shared_beats(pendings, channels);
   std::vector<Result<ChannelActivations>> results;
   for (Pending& pending : pendings) {
     if (pending.error) {

@@ -86,6 +86,32 @@ bool has_second_fall(std::span<const double> x, Window window, const SlopeFilter
   return false;
 }
 
+/// Centroid of the squared slope over a window that moves along with it: of a broad deflection the peak can
+/// be either flank, as noise decides, and a window about one flank holds only part of the other.
+double centre_of_slope(std::span<const double> x, std::size_t peak, double half_s, double fs,
+                       const SlopeFilter& slope) {
+  constexpr int kMoves = 8;
+  double centre = static_cast<double>(peak);
+  for (int move = 0; move < kMoves; ++move) {
+    const Window window =
+        about(static_cast<std::size_t>(std::llround(centre)), half_s, fs, x.size(), slope.reach());
+    double energy = 0.0;
+    double moment = 0.0; // about the first sample
+    for (std::size_t n = window.first; n < window.end; ++n) {
+      const double square = slope.at(x, n) * slope.at(x, n);
+      energy += square;
+      moment += static_cast<double>(n - window.first) * square;
+    }
+    if (energy <= 0.0) break;
+    const double next = static_cast<double>(window.first) + moment / energy;
+    const bool stays = std::abs(next - centre) < 0.01;
+    centre =
+        std::clamp(next, static_cast<double>(peak) - half_s * fs, static_cast<double>(peak) + half_s * fs);
+    if (stays) break;
+  }
+  return std::max(centre, 0.0);
+}
+
 Shape shape_of(std::span<const double> x, double centre, double width, double fs) {
   constexpr std::size_t n = std::tuple_size_v<Shape>;
   std::array<double, n> points{};
@@ -136,6 +162,7 @@ void measure_deflection(const DeflectionSignals& signals, std::size_t peak, Hert
   const Window lobes = about(peak, half_width, fs, x.size(), 0);
   const auto slope_at = [&](std::size_t n) { return slope.at(x, n); };
   const auto value_at = [&](std::size_t n) { return x[n]; };
+  candidate.centre_at = static_cast<double>(peak);
   if (steep.first < steep.end) {
     candidate.fall =
         static_cast<float>(extreme(steep, -1.0, slope_at, reach, x.size() - reach, candidate.fall_at).height);
@@ -146,6 +173,7 @@ void measure_deflection(const DeflectionSignals& signals, std::size_t peak, Hert
     for (std::size_t n = std::max(lobes.first, reach); n < std::min(lobes.end, x.size() - reach); ++n)
       energy += slope_at(n) * slope_at(n);
     candidate.slope_energy = static_cast<float>(energy);
+    candidate.centre_at = centre_of_slope(x, peak, half_width, fs, slope);
   }
   const double centre = static_cast<double>(peak);
   const double around = std::max(0.04, 1.5 * traits.deflection_width.value()) * fs;
@@ -174,7 +202,7 @@ void measure_deflection(const DeflectionSignals& signals, std::size_t peak, Hert
   }
   candidate.baseline_shift = static_cast<float>(
       lasting_shift(x, centre, half_width * fs + 0.002 * fs, refractory.value() * fs, 0.02 * fs));
-  candidate.shape = shape_of(signals.detection, steepest, traits.deflection_width.value(), fs);
+  candidate.shape = shape_of(signals.detection, candidate.centre_at, traits.deflection_width.value(), fs);
 }
 
 double similarity(const Shape& a, const Shape& b) {

@@ -5,7 +5,7 @@
 #include <cmath>
 #include <optional>
 
-#include "numerics/robust.h"
+#include "activation/standstill.h"
 
 namespace chronodrome::activation {
 namespace {
@@ -16,11 +16,12 @@ constexpr Seconds kReference{25.0};
 constexpr Seconds kLocal{10.0};
 constexpr Seconds kBeside{3.0};
 constexpr Seconds kMargin{10e-3};
+/// Noise moves the centre of a broad wave; in a standstill the distance of the others tells that it is one.
+constexpr Seconds kScatter{5e-3};
 constexpr double kSameDistance_s = 5e-3;
 constexpr double kNotLocalShare = 0.25;
 constexpr std::size_t kCompanions = 2;
-constexpr double kFixed_s = 2e-3;
-constexpr double kBluntShare = 0.65;
+constexpr double kLargeShare = 0.7;
 
 enum class Chamber { none, atrium, ventricle, his };
 
@@ -59,40 +60,37 @@ private:
   std::vector<double> values_;
 };
 
-/// Each candidate's slope over that of the local beats around it.
-std::vector<double> relative_slopes(const CandidateTrain& train) {
-  const auto& all = train.candidates;
-  const auto slope = [&](std::size_t i) { return near_field_slope(all[i], train.lead); };
+/// A measure of each candidate over that of the local beats around it.
+template <class Measure>
+std::vector<double> relative_to_local(const std::vector<Candidate>& all, Measure measure) {
   std::vector<double> relative(all.size());
   SortedWindow window;
   std::size_t first = 0;
   std::size_t end = 0;
   for (std::size_t i = 0; i < all.size(); ++i) {
     while (end < all.size() && all[end].time - all[i].time <= kReference)
-      window.add(slope(end++));
+      window.add(measure(all[end++]));
     while (all[i].time - all[first].time > kReference)
-      window.remove(slope(first++));
+      window.remove(measure(all[first++]));
     const double level = window.local_level();
-    relative[i] = level > 0.0 ? slope(i) / level : 1.0;
+    relative[i] = level > 0.0 ? measure(all[i]) / level : 1.0;
   }
   return relative;
+}
+
+std::vector<double> relative_slopes(const CandidateTrain& train) {
+  return relative_to_local(train.candidates,
+                           [&](const Candidate& c) { return near_field_slope(c, train.role, train.lead); });
+}
+
+std::vector<double> relative_sizes(const CandidateTrain& train) {
+  return relative_to_local(train.candidates, [](const Candidate& c) { return double{c.amplitude}; });
 }
 
 /// A beat that its own electrode shows as local.
 struct LocalBeat {
   Seconds time;
   double sharpness = 0.0; ///< slope over peak to peak, 1/s
-};
-
-double sharpness_of(const Candidate& candidate, recording::Lead lead) {
-  const double amplitude = static_cast<double>(candidate.amplitude);
-  return amplitude > 0.0 ? near_field_slope(candidate, lead) / amplitude : 0.0;
-}
-
-/// What ties a deflection to a beat of the other chamber.
-struct Lock {
-  double distance_s = 0.0; ///< behind that beat
-  double sharpness = 0.0;  ///< of that beat
 };
 
 /// The nearest beat of the other chamber that a deflection can be the far field of.
@@ -111,19 +109,28 @@ class TrainJudge {
 public:
   TrainJudge(const CandidateTrain& train, std::vector<double> relative, const std::vector<LocalBeat>& foreign,
              Seconds width, const ActivationSettings& settings)
-      : train_(train), relative_(std::move(relative)), settings_(settings),
-        is_his_(chamber_of(train.role) == Chamber::his) {
+      : train_(train), relative_(std::move(relative)), settings_(settings), chamber_(chamber_of(train.role)) {
     for (const Candidate& candidate : train.candidates)
       locks_.push_back(lock(foreign, candidate.time, settings.longest_far_field_lead, width + kMargin));
+    if (chamber_ == Chamber::ventricle) sizes_ = relative_sizes(train);
+    std::vector<std::optional<Lock>> loose;
+    for (const Candidate& candidate : train.candidates)
+      loose.push_back(
+          lock(foreign, candidate.time, settings.longest_far_field_lead + kScatter, width + kMargin));
+    standstill_ = judge_standstill(train, loose, relative_, settings.near_field_share);
   }
 
   [[nodiscard]] bool is_far(std::size_t i) const {
-    if (is_his_ && locks_[i]) return true;
+    if (chamber_ == Chamber::his && locks_[i]) return true;
     const double r = relative_[i];
-    if (locks_[i] && is_all_there_is(i)) return true;
+    if (standstill_[i] == StandstillVerdict::far) return true;
     if (r >= settings_.near_field_share) return false;
+    if (chamber_ == Chamber::ventricle && sizes_[i] >= kLargeShare) return false;
     if (locks_[i]) return r < settings_.far_field_share || has_companions(i);
     return r < kNotLocalShare && stands_between_local_beats(i);
+  }
+  [[nodiscard]] bool is_undecided(std::size_t i) const {
+    return chamber_ != Chamber::his && standstill_[i] == StandstillVerdict::undecided;
   }
 
 private:
@@ -142,30 +149,6 @@ private:
     return found >= kCompanions;
   }
 
-  /// The chamber stands still and the electrode shows the other one alone: blunt waves, all at one distance.
-  [[nodiscard]] bool is_all_there_is(std::size_t i) const {
-    const auto& all = train_.candidates;
-    std::size_t first = i;
-    std::size_t end = i + 1;
-    while (first > 0 && all[i].time - all[first - 1].time <= kLocal)
-      --first;
-    while (end < all.size() && all[end].time - all[i].time <= kLocal)
-      ++end;
-    std::vector<double> distances;
-    for (std::size_t k = first; k < end; ++k) {
-      if (locks_[k]) distances.push_back(locks_[k]->distance_s);
-    }
-    const double usual = numerics::median(distances);
-    if (std::abs(locks_[i]->distance_s - usual) > kSameDistance_s) return false;
-    std::vector<double> sharpness; // over that of the beat each is locked to
-    for (std::size_t k = first; k < end; ++k) {
-      if (locks_[k] && std::abs(locks_[k]->distance_s - usual) <= kFixed_s)
-        sharpness.push_back(sharpness_of(all[k], train_.lead) / locks_[k]->sharpness);
-    }
-    if (sharpness.size() <= kCompanions || 10 * sharpness.size() < 9 * (end - first)) return false;
-    return numerics::median(sharpness) < kBluntShare;
-  }
-
   [[nodiscard]] bool stands_between_local_beats(std::size_t i) const {
     const auto& all = train_.candidates;
     bool before = false;
@@ -180,15 +163,17 @@ private:
   const CandidateTrain& train_;
   std::vector<double> relative_;
   const ActivationSettings& settings_;
-  bool is_his_;
+  Chamber chamber_;
+  std::vector<double> sizes_; ///< peak to peak over that of the local beats, ventricle only
   std::vector<std::optional<Lock>> locks_;
+  std::vector<StandstillVerdict> standstill_;
 };
 
 } // namespace
 
-double near_field_slope(const Candidate& candidate, recording::Lead lead) {
-  return static_cast<double>(lead == recording::Lead::unipolar ? candidate.fall
-                                                               : std::max(candidate.fall, candidate.rise));
+double near_field_slope(const Candidate& candidate, Role role, recording::Lead lead) {
+  const bool falls_alone = lead == recording::Lead::unipolar && role != Role::ventricular;
+  return static_cast<double>(falls_alone ? candidate.fall : std::max(candidate.fall, candidate.rise));
 }
 
 void reject_far_field(std::span<CandidateTrain> trains, Seconds deflection_width,
@@ -202,7 +187,7 @@ void reject_far_field(std::span<CandidateTrain> trains, Seconds deflection_width
     for (std::size_t i = 0; i < train.candidates.size(); ++i) {
       const Candidate& candidate = train.candidates[i];
       if (relative.back()[i] >= settings.near_field_share)
-        local.back().push_back({candidate.time, sharpness_of(candidate, train.lead)});
+        local.back().push_back({candidate.time, sharpness_of(candidate, train)});
     }
   }
   std::vector<std::vector<char>> far(trains.size());
@@ -219,8 +204,10 @@ void reject_far_field(std::span<CandidateTrain> trains, Seconds deflection_width
     });
     const Seconds width = own == Chamber::his ? deflection_width * 0.5 : deflection_width;
     const TrainJudge judge(trains[t], relative[t], foreign, width, settings);
-    for (std::size_t i = 0; i < trains[t].candidates.size(); ++i)
+    for (std::size_t i = 0; i < trains[t].candidates.size(); ++i) {
       far[t].push_back(judge.is_far(i) ? 1 : 0);
+      if (far[t].back() == 0 && judge.is_undecided(i)) ++trains[t].undecided;
+    }
   }
   for (std::size_t t = 0; t < trains.size(); ++t) {
     if (far[t].empty()) continue;

@@ -18,6 +18,9 @@ constexpr double kLobeTie = 0.05;
 constexpr Seconds kStepMargin{0.1};
 constexpr Seconds kFlatMargin{0.02};
 
+constexpr double kUnlikeMatch = 0.6;
+constexpr double kLeastUsualMatch = 0.8;
+
 double between_0_and_1(double value) {
   return std::clamp(value, 0.0, 1.0);
 }
@@ -53,13 +56,13 @@ std::vector<Lobe> dominant_lobes(const std::vector<Candidate>& beats) {
   return lobes;
 }
 
-double confidence_of(const std::vector<Candidate>& beats, std::size_t i) {
-  const Candidate& beat = beats[i];
+double confidence_of(const Candidate& beat, double match, double usual) {
   const double height = static_cast<double>(beat.height);
   const double noise = static_cast<double>(beat.noise);
   const double q_noise = noise > 0.0 ? between_0_and_1((height / noise - 2.4) / (7.0 - 2.4)) : 1.0;
   const double q_level = between_0_and_1(height / (0.7 * static_cast<double>(beat.level)));
-  const double q_shape = between_0_and_1((shape_match(beats, i) - 0.6) / 0.35);
+  const double q_shape =
+      between_0_and_1((match - kUnlikeMatch) / (std::max(kLeastUsualMatch, usual) - kUnlikeMatch));
   return std::min(q_noise, q_level) * (0.6 + 0.4 * q_shape) * (beat.is_clipped ? 0.7 : 1.0);
 }
 
@@ -176,6 +179,9 @@ ChannelActivations finish_electrogram(const ChannelScan& scan, const CandidateTr
   }
   const std::vector<Lobe> lobes =
       fiducial == Fiducial::main_lobe ? dominant_lobes(beats) : std::vector<Lobe>();
+  std::vector<double> matches;
+  for (std::size_t i = 0; i < beats.size(); ++i)
+    matches.push_back(shape_match(beats, i));
   std::size_t lobe_changes = 0;
   for (std::size_t i = 0; i < beats.size(); ++i) {
     Activation mark;
@@ -186,7 +192,7 @@ ChannelActivations finish_electrogram(const ChannelScan& scan, const CandidateTr
     }
     mark.time = channel.time_at(mark.sample);
     mark.amplitude = static_cast<double>(beats[i].amplitude);
-    mark.confidence = confidence_of(beats, i);
+    mark.confidence = confidence_of(beats[i], matches[i], usual_match(matches, i));
     if (!result.marks.empty() && mark.time <= result.marks.back().time) continue;
     result.marks.push_back(mark);
   }

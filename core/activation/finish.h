@@ -23,7 +23,9 @@ Fiducial fiducial_of(const recording::Channel& channel);
 /// q_shape) * (clipped: 0.7), where
 ///   q_noise = (height / N - 2.4) / (7 - 2.4), 2.4 N being what noise alone reaches as a rule,
 ///   q_level = height / (0.7 S), S the local level,
-///   q_shape = (r - 0.6) / 0.35, r the correlation with the mean shape of the eight beats to either side,
+///   q_shape = (r - 0.6) / (max(0.8, r_usual) - 0.6), r the correlation with the mean shape of the eight
+///     beats to either side, r_usual the median r of those beats: noise common to all counts once, in
+///     q_noise,
 /// each held between 0 and 1. An ectopic beat of another shape keeps 0.6.
 /// timing_sd = max(1.5 noise / sqrt(sum of squared slopes), 0.05 sample periods): the Cramer-Rao bound with
 /// the loss of a slope detector against it (simulated).

@@ -35,6 +35,17 @@ double shape_match(const std::vector<Candidate>& beats, std::size_t i) {
   return aa > 0.0 && bb > 0.0 ? ab / std::sqrt(aa * bb) : 0.0;
 }
 
+double usual_match(std::span<const double> matches, std::size_t i) {
+  const std::size_t first = i > kShapeNeighbours ? i - kShapeNeighbours : 0;
+  const std::size_t end = std::min(matches.size(), i + kShapeNeighbours + 1);
+  if (end - first < 5) return 1.0;
+  std::vector<double> others;
+  for (std::size_t k = first; k < end; ++k) {
+    if (k != i) others.push_back(matches[k]);
+  }
+  return numerics::median(others);
+}
+
 void take_out_wiggles(std::vector<Candidate>& beats) {
   std::vector<char> is_wiggle(beats.size(), 0);
   std::vector<double> amplitudes;

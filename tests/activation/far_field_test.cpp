@@ -5,6 +5,8 @@
 #include <algorithm>
 #include <catch2/catch.hpp>
 #include <cmath>
+#include <memory>
+#include <string>
 
 #include "activation/compute.h"
 #include "support/beat_matching.h"
@@ -151,6 +153,118 @@ TEST_CASE("an atrium that stands still under an escape rhythm has no beats", "[f
   const Seen seen = look(heart, 120.0);
   check_exact(seen.atrial, heart.atrial);
   check_exact(seen.ventricular, heart.ventricular);
+}
+
+TEST_CASE("a far field is known by the own beats before the standstill", "[far_field]") {
+  // Longer than the 25 s over which slopes are compared otherwise.
+  View view;
+  view.noise = 0.01; // at 0.02 noise alone is as steep as the broadest of these waves
+  view.far_on_atrium = GENERATE(0.25, 0.4);
+  view.far_width = GENERATE(4e-3, 8e-3, 12e-3);
+  const auto lead = GENERATE(Lead::bipolar, Lead::unipolar);
+  Heart heart;
+  for (double t = 0.3; t < 60.0; t += 0.2703) {
+    heart.atrial.push_back(t);
+    heart.ventricular.push_back(t + 0.07);
+  }
+  for (double t = 61.5; t < 199.0; t += 1.6)
+    heart.ventricular.push_back(t);
+  const Seen seen = look(heart, 200.0, view, lead);
+  check_exact(seen.atrial, heart.atrial);
+  check_exact(seen.ventricular, heart.ventricular);
+}
+
+TEST_CASE("conducted and retrograde beats stay when they slowly lose nine tenths of their size",
+          "[far_field]") {
+  // 70 ms before the ventricle, or 20 ms behind it.
+  const double delay = GENERATE(0.07, -0.02);
+  Trace ra(200.0, 1000.0);
+  Trace rv(200.0, 1000.0);
+  Heart heart;
+  for (double t = 0.3; t < 199.0; t += 0.3003) {
+    heart.atrial.push_back(t);
+    heart.ventricular.push_back(t + delay);
+    ra.add_front(t, t < 60.0 ? 1.0 : std::max(0.1, std::exp((60.0 - t) / 40.0)), 2e-3);
+    rv.add_front(t + delay, 2.0, 2e-3);
+  }
+  ra.add_noise(0.005, 5);
+  rv.add_noise(0.005, 6);
+  const std::vector<recording::Channel> channels = {
+      channel_of_samples(ra.samples, 1000.0, Role::atrial, Lead::bipolar, {}, "RA"),
+      channel_of_samples(rv.samples, 1000.0, Role::ventricular, Lead::bipolar, {}, "RV")};
+  const auto results = activation::compute_all(channels, {}, 1);
+  check_exact(*results[0], heart.atrial);
+  check_exact(*results[1], heart.ventricular);
+}
+
+TEST_CASE("an inverted broad premature beat beside an atrial one is no far field", "[far_field]") {
+  Heart heart;
+  Trace ra(60.0, 1000.0);
+  Trace rv(60.0, 1000.0);
+  for (int k = 0; k < 200; ++k) {
+    const double t = 0.3 + 0.29 * k;
+    ra.add_front(t, 1.0, 2e-3);
+    heart.atrial.push_back(t);
+    const bool premature = k == 100;
+    heart.ventricular.push_back(premature ? t + 0.005 : t + 0.07);
+    if (premature) {
+      // Steep rise, slow return: the fall alone is a tenth of the usual one.
+      rv.add(heart.ventricular.back(), 0.1, [&](double at) {
+        const double u = at - heart.ventricular.back();
+        return 2.0 * (1.0 + std::tanh(u / 4e-3)) * std::exp(-std::max(u, 0.0) / 0.02);
+      });
+    } else {
+      rv.add_front(t + 0.07, 2.0, 2e-3);
+    }
+  }
+  ra.add_noise(0.01, 8);
+  rv.add_noise(0.01, 9);
+  const std::vector<recording::Channel> channels = {
+      channel_of_samples(ra.samples, 1000.0, Role::atrial, Lead::bipolar, {}, "RA"),
+      channel_of_samples(rv.samples, 1000.0, Role::ventricular, Lead::unipolar, {}, "RV")};
+  const auto results = activation::compute_all(channels, {}, 1);
+  // The fall of the premature wave, which is what is marked, lies behind its rise.
+  const auto matched = match(results[1]->marks, heart.ventricular, 0.025);
+  CHECK(matched.missed == 0);
+  CHECK(matched.false_beats == 0);
+}
+
+TEST_CASE("an atrial and a ventricular channel with the same beats are warned of", "[far_field]") {
+  const auto warned = [](const ChannelActivations& channel, const std::string& of) {
+    return std::any_of(channel.warnings.begin(), channel.warnings.end(),
+                       [&](const Warning& w) { return w.what.find(of) != std::string::npos; });
+  };
+  Trace both(60.0, 1000.0);
+  Trace ventricle(60.0, 1000.0);
+  for (double t = 0.3; t < 59.0; t += 0.3003) {
+    both.add_front(t, 1.0, 2e-3);
+    both.add_front(t + 0.1, 2.0, 2e-3);
+    ventricle.add_front(t + 0.1, 2.0, 2e-3);
+  }
+  both.add_noise(0.01, 3);
+  ventricle.add_noise(0.01, 4);
+  auto atrial = channel_of_samples(both.samples, 1000.0, Role::atrial, Lead::bipolar, {}, "RA");
+  auto shared = atrial;
+  shared.role = Role::ventricular;
+  shared.label = "RV";
+  for (const auto& result : activation::compute_all(std::vector{atrial, shared}, {}, 1))
+    CHECK(warned(*result, "RA and RV are one lead"));
+  const auto own = channel_of_samples(ventricle.samples, 1000.0, Role::ventricular, Lead::bipolar, {}, "V");
+  auto blind = own;
+  blind.role = Role::atrial;
+  blind.label = "A";
+  blind.recording = std::make_shared<recording::Recording>(*own.recording); // other signal, same beats
+  for (const auto& result : activation::compute_all(std::vector{blind, own}, {}, 1))
+    CHECK(warned(*result, "% of the marks of A coincide with marks of V"));
+  // A pair with beats of its own each is left alone.
+  Heart heart;
+  for (double t = 0.3; t < 59.0; t += 0.3003) {
+    heart.atrial.push_back(t);
+    heart.ventricular.push_back(t + 0.07);
+  }
+  const Seen seen = look(heart, 60.0);
+  CHECK_FALSE(warned(seen.atrial, "coincide"));
+  CHECK_FALSE(warned(seen.ventricular, "one lead"));
 }
 
 TEST_CASE("junctional beats of both chambers at once are all kept", "[far_field]") {

@@ -1,6 +1,8 @@
 // Chronodrome, GPL-3.0-or-later.
+#include <algorithm>
 #include <catch2/catch.hpp>
 #include <cmath>
+#include <vector>
 
 #include "activation/compute.h"
 #include "support/channel_of_samples.h"
@@ -105,4 +107,32 @@ TEST_CASE("an ectopic beat of another shape keeps the larger part of its confide
   CHECK(found->marks[70].confidence >= 0.5);
   CHECK(found->marks[70].confidence < 0.8);
   CHECK(found->marks[69].confidence > 0.95);
+}
+
+TEST_CASE("clean symmetric bipolar beats have a high confidence", "[quality]") {
+  // Fall and rise are equally steep: noise decides which is the steeper, beat by beat.
+  Trace trace(120.0, 1000.0);
+  for (int k = 0; k < 400; ++k)
+    trace.add_bump(0.3 + 0.2903 * k, 2.4, 2e-3);
+  trace.add_noise(2.4 / (2.0 * 68.0), 12); // peak to peak over twice the noise: 68
+  const auto found =
+      activation::compute(channel_of_samples(trace.samples, 1000.0, Role::atrial, Lead::bipolar), {});
+  REQUIRE(found->marks.size() == 400);
+  std::vector<double> confidence;
+  for (const auto& mark : found->marks)
+    confidence.push_back(mark.confidence);
+  std::sort(confidence.begin(), confidence.end());
+  CHECK(confidence[20] >= 0.9); // the 5 % quantile
+}
+
+TEST_CASE("beats near the noise have a low confidence", "[quality]") {
+  Trace trace = train(0.35, 0.0); // peak to peak over twice the noise: 3
+  const auto found =
+      activation::compute(channel_of_samples(trace.samples, 1000.0, Role::atrial, Lead::bipolar), {});
+  std::vector<double> confidence;
+  for (const auto& mark : found->marks)
+    confidence.push_back(mark.confidence);
+  REQUIRE(confidence.size() > 100);
+  std::sort(confidence.begin(), confidence.end());
+  CHECK(confidence[confidence.size() / 2] < 0.8);
 }
