@@ -131,8 +131,11 @@ protocol::Protocol protocol_from_annotations(const std::vector<recording::Annota
     }
   }
   put_in_order(protocol);
-  for (auto& warning : protocol.warnings)
+  const bool binary = file.size() > 4 && lower_case(file.substr(file.size() - 4)) == ".edf";
+  for (auto& warning : protocol.warnings) {
     warning.file = file;
+    if (binary && !warning.place.line) warning.place = Place::at_byte(0);
+  }
   return protocol;
 }
 

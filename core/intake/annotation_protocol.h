@@ -14,7 +14,8 @@ namespace chronodrome::intake {
 /// attached: `100 nM`, `100nM`). Without such a number the rest is the agent of a washout or vehicle, and the
 /// note of any other event. Capital letters in EVENT do not matter.
 ///
-/// Other annotations are passed over. Warnings (with the recording's `file`): a text that begins like an
+/// Other annotations are passed over. Where an annotation lies in its file is not known: warnings about a
+/// file that ends in .edf stand at byte 0. Warnings (with the recording's `file`): a text that begins like an
 /// event but cannot be read as one, and those of a log in a file.
 protocol::Protocol protocol_from_annotations(const std::vector<recording::Annotation>& annotations,
                                              const std::string& file);

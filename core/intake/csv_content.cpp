@@ -91,7 +91,8 @@ private:
                    "the times have more than " + std::to_string(settings_.limits.runs) + " gaps",
                    "check the time column, or set recording.csv.time_column"};
     if (settings_.rate) {
-      compare_rates(settings_.rate->value(), 1.0 / step, "the rate that is set");
+      compare_rates(settings_.rate->value(), axis_.measured ? axis_.measured->value() : 1.0 / step,
+                    "the rate that is set");
     } else if (axis_.residual_max > axis_.quantum + 1.0 / rate) {
       return Error{
           ErrorCode::bad_value, path_, Place::at_line(merge_.line_of(axis_.worst_row)),
@@ -114,9 +115,9 @@ private:
     warn_about_gaps();
     if (merge_.midnights > 0)
       recording_.file_notes.push_back("the clock passes " + plural(merge_.midnights, "turn", "turns") +
-                                      " of " + (layout_.clock_has_hours ? "the day" : "the hour"));
+                                      " of the day");
     if (merge_.rows_without_time > 0)
-      warn(layout_.data_line,
+      warn(merge_.without_time_line,
            plural(merge_.rows_without_time, "row has", "rows have") +
                " no time; placed by the rows around them",
            "check the time column");

@@ -54,14 +54,20 @@ std::optional<Error> TableMerge::add_stamps(std::vector<double>& stamps) {
   const TableColumn& column = layout_.columns[*layout_.time_column];
   for (std::size_t i = 0; i < stamps.size(); ++i) {
     if (std::isnan(stamps[i])) {
-      ++rows_without_time;
+      if (rows_without_time++ == 0) without_time_line = line_of(rows_ + i);
       continue;
     }
     stamps[i] += carried_;
-    // The clock passes midnight, or a clock without hours the full hour.
+    // The clock passes midnight, or a clock without hours the full hour (how many hours is not known).
     const double turn = layout_.clock_has_hours ? 86400.0 : 3600.0;
     if (column.kind == ColumnKind::clock && !layout_.clock_has_days && last_stamp_ &&
         stamps[i] < *last_stamp_ - 0.5 * turn) {
+      if (!layout_.clock_has_hours)
+        return error(ErrorCode::ambiguous, line_of(rows_ + i),
+                     "the clock of the column '" + column.source_as_written +
+                         "' passes the full hour but shows no hours, so that whole hours may be missing here",
+                     "export the time with hours, or as seconds; to read the rows as evenly spaced, set "
+                     "recording.csv.time_column to \"\" and recording.csv.rate_hz");
       carried_ += turn;
       stamps[i] += turn;
       ++midnights;

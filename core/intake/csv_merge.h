@@ -40,7 +40,8 @@ public:
   TableMerge(const TableLayout& layout, const ReadSettings& settings, const std::string& path,
              recording::StoreFolder& folder);
 
-  /// Errors: bad_value (time goes back), over_limit, and what the block met.
+  /// Errors: bad_value (time goes back), ambiguous (a clock without hours passes the full hour), over_limit,
+  /// and what the block met.
   std::optional<Error> add(RowBlock block);
 
   [[nodiscard]] std::size_t rows() const { return rows_; }
@@ -56,6 +57,7 @@ public:
   std::size_t repeated_headings = 0;
   std::size_t midnights = 0;
   std::size_t rows_without_time = 0;
+  std::size_t without_time_line = 0; ///< of the first one
   std::optional<std::size_t> dropped_line;
   bool unterminated = false;
 

@@ -8,6 +8,7 @@
 #include "base/parallel.h"
 #include "intake/csv_content.h"
 #include "intake/csv_dialect.h"
+#include "intake/csv_footer.h"
 #include "intake/csv_layout.h"
 #include "intake/csv_merge.h"
 #include "intake/csv_rows.h"
@@ -72,11 +73,29 @@ private:
     encoding_ = encoding->encoding;
     if (const auto added = blocks_.add_to(text_, kHeadBytes); !added) return added.error();
     const auto reading = find_dialect(text_, blocks_.at_end(), source_.path(), settings_);
-    if (!reading) return reading.error();
+    if (!reading) return with_long_line(reading.error());
     auto layout = find_layout(*reading, text_, source_.path(), settings_);
     if (!layout) return layout.error();
     layout_ = *std::move(layout);
     return std::nullopt;
+  }
+
+  /// A line that does not end inside the head is what keeps the table from being found.
+  [[nodiscard]] Error with_long_line(Error fault) const {
+    const std::size_t behind = text_.find_last_of("\r\n") + 1; // 0 if there is none
+    const std::size_t bytes = text_.size() - behind;
+    if (fault.code != ErrorCode::not_enough_data || blocks_.at_end() || bytes < text_.size() / 2)
+      return fault;
+    std::size_t line = 1;
+    for (std::size_t i = 0; i < behind; ++i)
+      line += text_[i] == '\n' || (text_[i] == '\r' && text_[i + 1] != '\n') ? 1U : 0U;
+    return too_long(line, std::min(bytes - 1, settings_.limits.line_bytes));
+  }
+
+  [[nodiscard]] Error too_long(std::size_t line, std::size_t bytes) const {
+    return {ErrorCode::over_limit, source_.path(), Place::at_line(line),
+            "the line is longer than " + std::to_string(bytes) + " bytes",
+            "check that the file is a table with line ends"};
   }
 
   std::optional<Error> read_body(TableMerge& merge) {
@@ -105,14 +124,25 @@ private:
 
   std::optional<Error> read_batch(TableMerge& merge, bool final, unsigned threads, std::size_t& consumed,
                                   std::optional<std::size_t>& open_quote) {
-    const bool quoted = text_.find('"') != std::string::npos;
-    const std::vector<std::string_view> pieces = pieces_of(text_, final, quoted);
+    // What may be the foot of the table waits until the end of the file is seen.
+    std::string_view text = text_;
+    const std::size_t body =
+        final ? footer_of(text, layout_) : text.size() - std::min(text.size(), kLargestFooter);
+    const std::string_view footer = text.substr(final ? body : text.size());
+    text = text.substr(0, body);
+    const bool quoted = text.find('"') != std::string_view::npos;
+    const std::vector<std::string_view> pieces = pieces_of(text, final, quoted);
     std::vector<RowBlock> blocks(pieces.size());
     parallel_for(pieces.size(), threads,
                  [&](std::size_t i) { blocks[i] = read_rows(pieces[i], layout_, final || !quoted); });
     for (RowBlock& block : blocks) {
       consumed += block.bytes;
       open_quote = block.open_quote_line;
+      if (auto fault = merge.add(std::move(block))) return fault;
+    }
+    if (!footer.empty() && consumed == body) {
+      RowBlock block = read_footer(footer, layout_);
+      consumed += block.bytes;
       if (auto fault = merge.add(std::move(block))) return fault;
     }
     return std::nullopt;
@@ -124,9 +154,7 @@ private:
       return {ErrorCode::damaged, source_.path(), Place::at_line(line),
               "a quote opened on line " + std::to_string(line) + " is not closed",
               "close it or take it out, and check that the file is whole"};
-    return {ErrorCode::over_limit, source_.path(), Place::at_line(line),
-            "the line is longer than " + std::to_string(settings_.limits.line_bytes) + " bytes",
-            "check that the file is a table with line ends"};
+    return too_long(line, settings_.limits.line_bytes);
   }
 
   const ByteSource& source_;

@@ -22,8 +22,8 @@ bool is_line_end(char c) {
 
 class RowReader {
 public:
-  RowReader(std::string_view text, const TableLayout& layout, bool final)
-      : text_(text), layout_(layout), final_(final), columns_(layout.columns.size()),
+  RowReader(std::string_view text, const TableLayout& layout, bool final, bool footer = false)
+      : text_(text), layout_(layout), final_(final), footer_(footer), columns_(layout.columns.size()),
         delimiter_(layout.dialect.delimiter), decimal_(layout.dialect.decimal) {
     for (const TableColumn& column : layout.columns)
       kinds_.push_back(column.kind);
@@ -43,7 +43,7 @@ public:
     while (at_ < end) {
       if (block_.rows == room_) make_room(2 * room_);
       const char* p = at_;
-      if (quick_row(p, end)) {
+      if (!footer_ && quick_row(p, end)) {
         keep_row(1);
         at_ = p;
       } else if (!careful_row()) {
@@ -154,7 +154,7 @@ private:
     if (record.end == RecordEnd::open_quote) block_.open_quote_line = block_.lines;
     if (record.end != RecordEnd::complete) return false;
     at_ = text_.data() + record.next;
-    if (!record.terminated && is_cut()) {
+    if (!record.terminated && !footer_ && is_cut()) {
       block_.dropped_line = block_.lines;
       return true;
     }
@@ -196,7 +196,7 @@ private:
     // Without a time column a row of empty cells takes its time all the same.
     const bool counts =
         !layout_.time_column && columns_ > 1 && record_.size() >= columns_ && tally.texts == 0;
-    if ((tally.values + tally.times + tally.words == 0 && !counts) ||
+    if (footer_ || (tally.values + tally.times + tally.words == 0 && !counts) ||
         (tally.values == 0 && tally.texts > 0)) {
       take_line_of_its_own(tally, out, lines);
     } else {
@@ -298,7 +298,7 @@ private:
 
   std::string_view text_;
   const TableLayout& layout_;
-  bool final_;
+  bool final_, footer_;
   std::size_t columns_;
   char delimiter_, decimal_;
   std::vector<ColumnKind> kinds_;
@@ -315,6 +315,10 @@ private:
 
 RowBlock read_rows(std::string_view text, const TableLayout& layout, bool final) {
   return RowReader(text, layout, final).read();
+}
+
+RowBlock read_footer(std::string_view text, const TableLayout& layout) {
+  return RowReader(text, layout, true, true).read();
 }
 
 } // namespace chronodrome::intake

@@ -58,4 +58,7 @@ struct RowBlock {
 /// Rows of `text`, which begins with a record. `final`: its last record is whole, or the file ends there.
 RowBlock read_rows(std::string_view text, const TableLayout& layout, bool final);
 
+/// The lines below a table, each as a text of its own.
+RowBlock read_footer(std::string_view text, const TableLayout& layout);
+
 } // namespace chronodrome::intake

@@ -9,6 +9,7 @@ namespace chronodrome::intake {
 namespace {
 
 constexpr std::size_t kHead = 65536;
+constexpr std::size_t kFewStrange = 2; // stray bytes that even a short table may hold
 
 unsigned char byte_at(std::string_view text, std::size_t i) {
   return static_cast<unsigned char>(text[i]);
@@ -138,7 +139,7 @@ std::string not_text(std::string_view head) {
     const auto byte = static_cast<unsigned char>(c);
     if (byte < 32 && c != '\n' && c != '\r' && c != '\t' && c != '\f' && c != '\v' && c != '\x1A') ++strange;
   }
-  return strange > head.size() / 100 ? "a binary file" : "";
+  return strange > std::max(kFewStrange, head.size() / 100) ? "a binary file" : "";
 }
 
 std::string as_utf8(std::string_view text) {

@@ -5,6 +5,8 @@
 #include <cmath>
 #include <limits>
 
+#include "intake/csv_rate.h"
+
 namespace chronodrome::intake {
 namespace {
 
@@ -151,18 +153,13 @@ Ends ends_of(std::span<const double> stamps, const AxisRun& run) {
   return ends;
 }
 
-std::optional<double> measured_rate(std::span<const double> stamps, const std::vector<AxisRun>& runs,
-                                    double unit) {
-  double rows = 0.0, time = 0.0;
-  for (const AxisRun& run : runs) {
-    const Ends ends = ends_of(stamps, run);
-    rows += static_cast<double>(ends.last - ends.first);
-    time += (stamps[ends.last] - stamps[ends.first]) * unit;
-  }
-  if (!(rows > 0.0) || !(time > 0.0)) return std::nullopt;
-  const double rate = rows / time;
+std::optional<Hertz> measured_rate(std::span<const double> stamps, const std::vector<AxisRun>& runs,
+                                   double quantum, double unit) {
+  const auto step = usual_step(stamps, runs, quantum);
+  if (!step) return std::nullopt;
+  const double rate = 1.0 / (*step * unit);
   // A whole number, but for the rounding of doubles.
-  return std::abs(rate - std::round(rate)) < 1e-12 * rate ? std::round(rate) : rate;
+  return Hertz(std::abs(rate - std::round(rate)) < 1e-12 * rate ? std::round(rate) : rate);
 }
 
 void place_runs(std::span<const double> stamps, TimeAxis& axis, double unit) {
@@ -225,14 +222,14 @@ Result<TimeAxis> find_axis(std::span<const double> stamps, const StepFound& foun
   TimeAxis axis;
   axis.runs = split_at_gaps(stamps, found);
   axis.quantum = found.quantum * unit;
-  const auto measured = measured_rate(stamps, axis.runs, unit);
-  if (!rate && !measured)
+  axis.measured = measured_rate(stamps, axis.runs, found.quantum, unit);
+  if (!rate && !axis.measured)
     return Error{ErrorCode::not_enough_data,
                  path,
                  {},
                  "no two rows follow each other in time, so that there is no rate",
                  "set recording.csv.rate_hz"};
-  axis.rate = rate ? *rate : Hertz(*measured);
+  axis.rate = rate ? *rate : *axis.measured;
   const Ends ends = ends_of(stamps, axis.runs.front());
   axis.zero = stamps[ends.first] * unit - static_cast<double>(ends.first) / axis.rate.value();
   place_runs(stamps, axis, unit);

@@ -33,7 +33,8 @@ struct AxisRun {
 /// When each row was taken.
 struct TimeAxis {
   Hertz rate{1.0};
-  double zero = 0.0; ///< seconds: the first stamp
+  std::optional<Hertz> measured; ///< from the stamps, where they tell one; `rate` unless that was set
+  double zero = 0.0;             ///< seconds: the first stamp
   std::vector<AxisRun> runs;
   double quantum = 0.0;      ///< seconds; 0: the stamps are not rounded
   double residual_max = 0.0; ///< of the stamps about the axis, seconds
@@ -42,9 +43,9 @@ struct TimeAxis {
 };
 
 /// The axis rebuilt from the count of rows: a gap where a step exceeds 1.5 usual steps (and the rounding of
-/// the stamps), and between gaps a rate of (N - 1) / (last - first), one for the whole table. Runs behind a
-/// gap are placed so that their stamps scatter about the axis as those of the first run do. `unit`: seconds
-/// per unit of the stamps. `rate`: overrides the measured one. Errors: not_enough_data.
+/// the stamps), and between gaps one rate for the whole table, see usual_step(). Runs behind a gap are placed
+/// so that their stamps scatter about the axis as those of the first run do. `unit`: seconds per unit of the
+/// stamps. `rate`: overrides the measured one. Errors: not_enough_data.
 Result<TimeAxis> find_axis(std::span<const double> stamps, const StepFound& found, double unit,
                            std::optional<Hertz> rate, const std::string& path);
 

@@ -18,6 +18,10 @@ constexpr std::uint64_t kBatchBytes = std::uint64_t{1} << 22U;
 constexpr std::size_t kListed = 20; // gaps and unreadable annotations that get a warning each
 constexpr double kFewSteps = 16.0;  // a signal that spans fewer steps of its converter is coarse
 
+std::string counted(std::uint64_t count, const char* one, const char* many) {
+  return std::to_string(count) + " " + (count == 1 ? one : many);
+}
+
 /// A signal with samples while it is read.
 struct SignalInProgress {
   const EdfSignal* about = nullptr;
@@ -211,9 +215,9 @@ private:
     }
     if (outside > 0)
       warn(header_.header_bytes,
-           std::to_string(outside) + " samples of " + name +
-               " lie outside the digital range that the header states",
-           "they are kept as they are");
+           counted(outside, "sample", "samples") + " of " + name + (outside == 1 ? " lies" : " lie") +
+               " outside the digital range that the header states",
+           "kept as they are");
   }
 
   void finish_annotations() {
@@ -228,15 +232,15 @@ private:
                      [](const auto& a, const auto& b) { return a.onset < b.onset; });
     if (outside > 0)
       warn(header_.header_bytes,
-           std::to_string(outside) + " annotations lie before the first or behind the last sample",
-           "check their times");
+           counted(outside, "annotation lies", "annotations lie") +
+               " before the first or behind the last sample",
+           "check the times of the annotations");
     if (odd_ > 0)
       warn(byte_of(odd_record_),
-           std::to_string(odd_) +
-               " annotations have a time without sign or with a decimal comma "
-               "(first in record " +
+           counted(odd_, "annotation has", "annotations have") +
+               " a time without sign or with a decimal comma (first in record " +
                std::to_string(odd_record_ + 1) + ")",
-           "they are read all the same");
+           "read all the same");
     if (unreadable_ > kListed)
       warn(header_.header_bytes, std::to_string(unreadable_) + " annotations in all have no readable time",
            "they were dropped");
@@ -252,13 +256,21 @@ private:
            "less than a second is usual; check the clock time");
     if (header_.has_annotations() && times_.without_onset() > 0 && header_.has_samples())
       warn(header_.header_bytes,
-           std::to_string(times_.without_onset()) + " records do not say when they begin",
-           "they are taken to follow the record before them");
+           counted(times_.without_onset(), "record does not say when it begins",
+                   "records do not say when they begin"),
+           "taken to follow the record before");
+    if (const auto& odd = times_.first_isolated())
+      warn(byte_of(odd->record),
+           "record " + std::to_string(odd->record + 1) + " says that it begins at " +
+               number_text(odd->onset, 9) + " s, but the records around it put it at " +
+               number_text(odd->expected, 9) + " s" +
+               (times_.isolated() > 1 ? " (" + std::to_string(times_.isolated()) + " such records)" : ""),
+           "its onset is not used; check the file");
     if (times_.overlapping() > 0)
       warn(header_.header_bytes,
-           std::to_string(times_.overlapping()) +
-               " records say that they begin before the record before them ends, but "
-               "the file says it is continuous",
+           counted(times_.overlapping(), "record says that it begins before the record before it ends",
+                   "records say that they begin before the record before them ends") +
+               ", but the file says it is continuous",
            "it is read as continuous");
     report_gaps();
   }

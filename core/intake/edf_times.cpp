@@ -23,6 +23,19 @@ EdfTimes::EdfTimes(const EdfHeader& header)
     : discontinuous_(header.kind == EdfKindRead::discontinuous), duration_(header.duration),
       tolerance_(tolerance_of(header)) {}
 
+/// A record that said it was late or early, and a follower that stands where it would without that record.
+void EdfTimes::outvote_if_isolated(double onset) {
+  if (std::abs(onset - doubtful_.expected - duration_) > tolerance_) return;
+  if (doubt_ == Doubt::late) {
+    const std::uint64_t count = runs_.back().count;
+    runs_.pop_back();
+    runs_.back().count += count;
+  } else {
+    --overlapping_;
+  }
+  if (isolated_++ == 0) first_isolated_ = doubtful_;
+}
+
 bool EdfTimes::add(std::optional<double> onset) {
   const std::uint64_t record = records_++;
   if (!onset) ++without_onset_;
@@ -31,9 +44,16 @@ bool EdfTimes::add(std::optional<double> onset) {
     runs_.push_back({0, 1, 0.0});
     return true;
   }
+  if (onset && doubt_ != Doubt::none) outvote_if_isolated(*onset);
+  doubt_ = Doubt::none;
   RecordRun& run = runs_.back();
   const double expected = run.start + static_cast<double>(record - run.record) * duration_;
   const double late = onset ? *onset - *first_onset_ - expected : 0.0;
+  // A discontinuous file means its gaps.
+  if (std::abs(late) > tolerance_ && !discontinuous_) {
+    doubt_ = late > 0.0 ? Doubt::late : Doubt::early;
+    doubtful_ = {record, *onset, *first_onset_ + expected};
+  }
   if (late > tolerance_) {
     runs_.push_back({record, 1, expected + late});
     return true;

@@ -108,6 +108,15 @@ std::optional<double> JsonObject::number(const std::string& key, Range range) {
   return value->number;
 }
 
+std::optional<double> JsonObject::number_between(const std::string& key, double low, double high,
+                                                 const std::string& unit) {
+  const JsonValue* value = find(key);
+  if (value == nullptr || !is(*value, key, JsonValue::Kind::number)) return std::nullopt;
+  if (value->number >= low && value->number <= high) return value->number;
+  refuse(key, *value, "use a number from " + number_text(low) + " to " + number_text(high) + " " + unit);
+  return std::nullopt;
+}
+
 std::optional<int> JsonObject::whole_number(const std::string& key) {
   const JsonValue* value = find(key);
   if (value == nullptr || !is(*value, key, JsonValue::Kind::number)) return std::nullopt;

@@ -43,6 +43,9 @@ public:
   std::string required_text(const std::string& key, const std::string& meaning);
   std::optional<std::string> optional_text(const std::string& key);
   std::optional<double> number(const std::string& key, Range range = Range::any);
+  /// From `low` to `high`, or an error that names both with their unit.
+  std::optional<double> number_between(const std::string& key, double low, double high,
+                                       const std::string& unit);
   /// Within int, or an error.
   std::optional<int> whole_number(const std::string& key);
   bool truth(const std::string& key);

@@ -176,7 +176,8 @@ private:
 
   bool open(JsonValue::Kind kind) {
     if (open_.size() >= kDeepest)
-      return fail(ErrorCode::over_limit, "nested deeper than " + std::to_string(kDeepest) + " levels", "");
+      return fail(ErrorCode::over_limit, "nested deeper than " + std::to_string(kDeepest) + " levels",
+                  "check where a bracket is not closed; a session needs no more than five levels");
     if (!put(kind)) return false;
     cursor_.step();
     // An open container is the last child of its parent, which therefore does not grow: the pointer holds.

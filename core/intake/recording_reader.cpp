@@ -14,7 +14,7 @@ namespace chronodrome::intake {
 namespace {
 
 // Raised whenever the same bytes would be read into something else.
-constexpr const char* kReaderVersion = "1";
+constexpr const char* kReaderVersion = "2";
 constexpr std::size_t kHeadBytes = 512;
 
 enum class FileKind { table, edf };
@@ -95,8 +95,8 @@ std::optional<Error> ReadSettings::check() const {
   const auto bad = [](const std::string& what, const std::string& remedy) {
     return Error{ErrorCode::bad_usage, "", {}, what, remedy};
   };
-  if (rate && !(rate->value() > 0.0 && rate->value() <= 1e9))
-    return bad("recording.csv.rate_hz is " + number_text(rate->value()), "give a rate above 0");
+  if (rate && !(rate->value() >= kSlowestRate.value() && rate->value() <= kFastestRate.value()))
+    return bad("recording.csv.rate_hz is " + number_text(rate->value()), "give a rate from 0.01 to 1e7 Hz");
   if (decimal && *decimal != '.' && *decimal != ',')
     return bad("recording.csv.decimal is neither \".\" nor \",\"", "set it to one of them, or to null");
   if (delimiter) {

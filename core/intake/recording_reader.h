@@ -24,6 +24,10 @@ struct ReadLimits {
   std::size_t runs = 1'000'000;                       ///< stretches between gaps, in one signal
 };
 
+/// Rates that a recording may be said to have.
+inline constexpr Hertz kSlowestRate{0.01};
+inline constexpr Hertz kFastestRate{1e7};
+
 /// How a recording is to be read. What is left open is found out, and refused where it cannot be found out
 /// surely.
 struct ReadSettings {
@@ -36,7 +40,8 @@ struct ReadSettings {
   unsigned threads = 0;                   ///< 0: as many as the machine has; does not change the result
   ReadLimits limits;
 
-  /// Errors: bad_usage (a rate that is not positive, a delimiter or decimal mark that cannot be one).
+  /// Errors: bad_usage (a rate outside kSlowestRate to kFastestRate, a delimiter or decimal mark that cannot
+  /// be one).
   [[nodiscard]] std::optional<Error> check() const;
 };
 

@@ -35,7 +35,7 @@ public:
 
   Result<ResponseTable> parse() {
     if (const std::size_t bad = first_not_utf8(text_); bad != std::string_view::npos) {
-      return Error{ErrorCode::wrong_format, name_, Place::at_byte(bad), "is not UTF-8 text",
+      return Error{ErrorCode::wrong_format, name_, Place::at_byte(bad), "the file is not UTF-8 text",
                    "save the table as CSV in UTF-8"};
     }
     while (!error_ && read_record_here()) {

@@ -13,6 +13,9 @@ using document::ChannelEntry;
 using document::PathwayEntry;
 using document::SessionFile;
 
+// Channels of one recorder are skewed by a sample or so; a whole second is already a fault.
+constexpr double kLargestSkew = 1.0; // seconds
+
 constexpr const char* kRoles =
     "sinus, atrial, his, ventricular, ecg, map, stimulus, tension, pressure, flow, temperature, other";
 
@@ -70,7 +73,7 @@ void read_channel(const JsonValue& item, const std::string& path, SessionFile& s
   channel.invert = fields.truth("invert");
   channel.position_mm = fields.pair("position_mm");
   read_calibration(fields, channel, notes);
-  channel.skew = Seconds(fields.number("skew_s").value_or(0.0));
+  channel.skew = Seconds(fields.number_between("skew_s", -kLargestSkew, kLargestSkew, "s").value_or(0.0));
   fields.finish();
   if (notes.failed()) return;
   if (with_label(session.channels, channel.label) != nullptr)
@@ -154,7 +157,10 @@ void read_measure(const JsonValue& item, const std::string& path, SessionFile& s
 } // namespace
 
 void read_channels(JsonObject& root, SessionFile& session, JsonNotes& notes) {
-  if (root.require("channels", "a list of channels") == nullptr) return;
+  const JsonValue* channels = root.require("channels", "a list of channels");
+  if (channels == nullptr) return;
+  if (channels->kind == JsonValue::Kind::list && channels->items.empty())
+    notes.fail(channels->place(), "channels is empty", "describe at least one channel");
   root.for_each("channels", [&](const JsonValue& item, const std::string& path) {
     read_channel(item, path, session, notes);
   });

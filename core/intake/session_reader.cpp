@@ -5,6 +5,7 @@
 #include <filesystem>
 
 #include "base/number_text.h"
+#include "intake/recording_reader.h"
 #include "intake/session_parts.h"
 #include "intake/text_file.h"
 
@@ -75,7 +76,7 @@ void read_csv_choices(JsonObject& recording, SessionFile& session, JsonNotes& no
   if (value == nullptr) return;
   JsonObject fields(*value, "recording.csv", notes);
   auto& csv = session.csv;
-  csv.rate_hz = fields.number("rate_hz", Range::positive);
+  csv.rate_hz = fields.number_between("rate_hz", kSlowestRate.value(), kFastestRate.value(), "Hz");
   csv.delimiter = read_mark(fields, "delimiter", ",;\t |",
                             "use one of \",\" \";\" \"\\t\" \" \" \"|\", or null to find out");
   csv.decimal = read_mark(fields, "decimal", ".,", "use \".\" or \",\", or null to find out");

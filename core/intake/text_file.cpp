@@ -42,16 +42,18 @@ std::size_t continuation_bytes(unsigned char lead) {
 Result<std::string> read_text_file(const std::string& path, std::size_t limit) {
   const OpenFile file(path);
   if (file.handle() < 0) {
-    return fault(ErrorCode::file_missing, path, std::string("cannot be opened: ") + std::strerror(errno),
+    return fault(ErrorCode::file_missing, path,
+                 std::string("the file cannot be opened: ") + std::strerror(errno),
                  "check the path and the permissions");
   }
   struct stat status {};
   if (::fstat(file.handle(), &status) != 0) {
-    return fault(ErrorCode::read_failed, path, std::string("cannot be examined: ") + std::strerror(errno),
-                 "");
+    return fault(ErrorCode::read_failed, path,
+                 std::string("the file cannot be examined: ") + std::strerror(errno),
+                 "copy the file to a local disk and try again");
   }
   if (!S_ISREG(status.st_mode))
-    return fault(ErrorCode::wrong_format, path, "is a folder or a device, not a file",
+    return fault(ErrorCode::wrong_format, path, "this is a folder or a device, not a file",
                  "name the file itself");
   std::string text;
   std::string block(1U << 16U, '\0');
@@ -60,14 +62,14 @@ Result<std::string> read_text_file(const std::string& path, std::size_t limit) {
     if (got < 0 && errno == EINTR) continue;
     if (got < 0) {
       return Error{ErrorCode::read_failed, path, Place::at_byte(text.size()),
-                   std::string("cannot be read on: ") + std::strerror(errno),
+                   std::string("the file cannot be read on: ") + std::strerror(errno),
                    "copy the file to a sound disk"};
     }
     if (got == 0) return text;
     text.append(block, 0, static_cast<std::size_t>(got));
     if (text.size() > limit) {
       return fault(ErrorCode::over_limit, path,
-                   "holds more than " + std::to_string(limit >> 20U) +
+                   "the file holds more than " + std::to_string(limit >> 20U) +
                        " MiB, the limit for this kind of file",
                    "check that this is the file that was meant");
     }

@@ -66,7 +66,7 @@ TEST_CASE("a text that looks like an event and cannot be read is told", "[protoc
                            "added ACh 1e-7 M", "wash", "addition ACh 0,3 uM"});
   CHECK(log.events.empty());
   REQUIRE(log.warnings.size() == 6);
-  CHECK(describe(log.warnings[0]) == "r.edf:1: warning: the annotation \"addition acetylcholine\" at 10 s is "
+  CHECK(describe(log.warnings[0]) == "r.edf:0: warning: the annotation \"addition acetylcholine\" at 10 s is "
                                      "no event: it holds no number with a "
                                      "unit; write it as EVENT AGENT VALUE UNIT, or give the log in a file");
   CHECK(log.warnings[1].what == "the annotation \"addition 1e-7 M\" at 20 s is no event: it names no agent");

@@ -384,3 +384,67 @@ TEST_CASE("an empty table says what was read last", "[csv]") {
   CHECK(error_of("\n\n").code == ErrorCode::not_enough_data);
   CHECK(error_of("time (s)\n0.001\n0.002\n0.003\n").what.find("no column of samples") != std::string::npos);
 }
+
+TEST_CASE("lines below the table become notes, whatever numbers they hold", "[csv]") {
+  std::string text = kHead;
+  for (int i = 0; i < 50; ++i)
+    text += "0.0" + std::to_string(10 + i) + ",1.5,2.5\n";
+  for (const std::string end : {"\n", "", "\r\n\r\n"}) {
+    const auto read = good(text + "Totals,12,75.5\nMean,1.5,2.5\n\nEnd of data" + end);
+    CHECK(samples_of(read, "RA").size() == 50);
+    CHECK(samples_of(read, "RA").back() == 1.5);
+    CHECK(read.annotations.empty());
+    CHECK(read.file_notes == std::vector<std::string>{"Totals 12 75.5", "Mean 1.5 2.5", "End of data"});
+    CHECK_FALSE(has_warning(read, "no time"));
+  }
+  // A damaged time is no footer.
+  const auto damaged = good(text + "0.0x6,7.5,2.5\n");
+  CHECK(samples_of(damaged, "RA").back() == 7.5);
+}
+
+TEST_CASE("the lines below a table of many blocks are notes for any number of threads", "[csv]") {
+  std::string text = kHead;
+  for (int i = 0; i < 300'000; ++i)
+    text += std::to_string(i / 1000) + "." + std::to_string(1000 + i % 1000).substr(1) + ",1.5,2.5\n";
+  for (const unsigned threads : {1U, 3U}) {
+    ReadSettings settings = in_memory();
+    settings.threads = threads;
+    const auto read = good(text + "Totals,12,13\n", settings);
+    CHECK(samples_of(read, "RA").size() == 300'000);
+    CHECK(read.file_notes == std::vector<std::string>{"Totals 12 13"});
+  }
+}
+
+TEST_CASE("a row without a time is told with its line", "[csv]") {
+  const auto read = good(kHead + "0.000,1,2\n0.001,2,3\n,2.5,4\n0.003,1,1\n");
+  CHECK(has_warning(read, "table.csv:4: warning: 1 row has no time; placed by the rows around them"));
+}
+
+TEST_CASE("a line without an end is blamed for itself", "[csv]") {
+  const std::string endless(2U << 20U, '1');
+  const Error behind = error_of(kHead + "0," + endless);
+  CHECK(behind.code == ErrorCode::over_limit);
+  CHECK(behind.place.line == 2);
+  CHECK(behind.what.find("the line is longer than 1048") == 0);
+  const Error alone = error_of(std::string(2U << 20U, 'x'));
+  CHECK(alone.code == ErrorCode::over_limit);
+  CHECK(alone.place.line == 1);
+}
+
+TEST_CASE("one stray zero byte spoils its cell and nothing else", "[csv]") {
+  const auto read = good(kHead + "0.000,1,2\n0.001," + std::string(1, '\0') + "2,3\n0.002,3,4\n");
+  CHECK(samples_of(read, "RA") == std::vector<double>{1, 3});
+  CHECK(samples_of(read, "RV") == std::vector<double>{2, 3, 4});
+  CHECK(has_warning(read, "table.csv:3: warning: '"));
+}
+
+TEST_CASE("a clock without hours that passes the full hour is refused", "[csv]") {
+  std::string text = "time,RA (mV)\n";
+  for (int i = 0; i < 40; ++i)
+    text +=
+        (i < 20 ? "59:5" : "00:0") + std::to_string(i % 20 / 2) + "." + (i % 2 == 0 ? "0" : "5") + ",1.5\n";
+  const Error error = error_of(text);
+  CHECK(error.code == ErrorCode::ambiguous);
+  CHECK(error.place.line == 22);
+  CHECK(error.what.find("passes the full hour but shows no hours") != std::string::npos);
+}

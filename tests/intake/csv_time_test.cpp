@@ -172,3 +172,67 @@ TEST_CASE("rows at a rate without stamps are one run", "[csv]") {
   CHECK(axis.runs[0].count == 42);
   CHECK(plain_axis(0, Hertz(250.0)).runs.empty());
 }
+
+TEST_CASE("a clock of whole seconds gives the exact rate, wherever the table begins", "[csv]") {
+  for (const double rate : {10.0, 100.0, 1000.0}) {
+    for (const double seconds : {4.0, 10.0, 120.0}) {
+      for (const double begin : {0.0, 0.3, 0.9}) {
+        const auto rows = static_cast<std::size_t>(rate * seconds);
+        std::vector<double> stamps(rows);
+        for (std::size_t i = 0; i < rows; ++i) // cut, as clocks show it; the hair keeps 0.3 + 0.7 at 1
+          stamps[i] = 36'000.0 + std::floor(begin + static_cast<double>(i) / rate + 1e-9);
+        CAPTURE(rate, seconds, begin);
+        const TimeAxis axis = axis_of(stamps, 1.0);
+        CHECK(axis.runs.size() == 1);
+        CHECK(axis.quantum == 1.0);
+        CHECK_THAT(axis.rate.value(), WithinRel(rate, 1e-12)); // rounding of doubles
+        CHECK(axis.zero == stamps[0]);
+      }
+    }
+  }
+}
+
+TEST_CASE("stamps rounded up and down at their halves still give the exact rate", "[csv]") {
+  // 2 kHz written to the millisecond: every other row lies on a half, which goes either way.
+  std::mt19937_64 random(5);
+  std::vector<double> stamps(1000);
+  for (std::size_t i = 0; i < stamps.size(); ++i)
+    stamps[i] = static_cast<double>(i % 2 == 0 ? i / 2 : i / 2 + random() % 2) * 1e-3;
+  CHECK_THAT(axis_of(stamps, 1e-3).rate.value(), WithinRel(2000.0, 1e-9)); // rounding of doubles
+}
+
+TEST_CASE("a gap between rounded stamps leaves the rate as it is", "[csv]") {
+  std::vector<double> stamps(3000);
+  for (std::size_t i = 0; i < stamps.size(); ++i)
+    stamps[i] = std::floor(static_cast<double>(i) / 100.0 + 1e-9) + (i < 1250 ? 0.0 : 40.0);
+  const TimeAxis axis = axis_of(stamps, 1.0);
+  REQUIRE(axis.runs.size() == 2);
+  CHECK(axis.runs[1].row == 1250);
+  CHECK_THAT(axis.rate.value(), WithinRel(100.0, 1e-12));
+}
+
+TEST_CASE("stamps that scatter beyond their rounding are regressed", "[csv]") {
+  std::mt19937_64 random(9);
+  const std::size_t rows = 20'000;
+  std::vector<double> stamps(rows);
+  double last = 0.0;
+  for (std::size_t i = 0; i < rows; ++i) { // 250 Hz, each stamp up to 1.5 ms late, written to 0.1 ms
+    const double late = static_cast<double>(random() % 1500) * 1e-6;
+    last = stamps[i] = std::max(last, std::round((static_cast<double>(i) / 250.0 + late) * 1e4) / 1e4);
+  }
+  const TimeAxis axis = axis_of(stamps, 1e-4);
+  // Uniform scatter of SD 0.433 ms: SD of the least-squares slope 0.433 ms sqrt(12) / rows^1.5, four of them.
+  const double slope_sd = 0.433e-3 * std::sqrt(12.0) / std::pow(static_cast<double>(rows), 1.5);
+  CHECK_THAT(1.0 / axis.rate.value(), WithinAbs(1.0 / 250.0, 4.0 * slope_sd));
+}
+
+TEST_CASE("the rate that the stamps tell is kept beside one that is set", "[csv]") {
+  const auto stamps = stamps_of(1000, 100.0, {}, 1.0);
+  const auto found = find_step(stamps, 1.0);
+  REQUIRE(found.has_value());
+  const auto axis = find_axis(stamps, *found, 1.0, Hertz(99.0), "t.csv");
+  REQUIRE(axis.ok());
+  CHECK(axis->rate == Hertz(99.0));
+  REQUIRE(axis->measured.has_value());
+  CHECK_THAT(axis->measured->value(), WithinRel(100.0, 1e-12));
+}

@@ -225,13 +225,36 @@ TEST_CASE("record onsets that show a gap are trusted, whatever the marker says",
 }
 
 TEST_CASE("records that begin before the one before them ends stop a discontinuous file only", "[edf]") {
+  // The last record has no follower that could outvote it.
+  const auto last = good(with_list(small_file(), 5, "+1.5\x14\x14\0"s));
+  CHECK(last.signals[0].time_base.runs().size() == 1);
+  CHECK(has_warning(last, "1 record says that it begins before the record before it ends, but the file"));
   const std::string file = with_list(small_file(), 4, "+1.5\x14\x14\0"s);
   const auto continuous = good(file);
   CHECK(continuous.signals[0].time_base.runs().size() == 1);
-  CHECK(has_warning(continuous, "1 records say that they begin before"));
+  CHECK(has_warning(continuous, "record 5 says that it begins at 1.5 s, but the records around it put it at "
+                                "4 s; its onset is not used"));
+  CHECK_FALSE(has_warning(continuous, "begins before the record before it"));
   const Error error = error_of(patched(file, 192, "EDF+D", 44));
   CHECK(error.code == ErrorCode::damaged);
   CHECK(error.place.byte == 1024 + 4 * kRecordBytes);
+}
+
+TEST_CASE("one record onset that its neighbours outvote makes no gap in a continuous file", "[edf]") {
+  const std::string late = with_list(small_file(), 2, "+9\x14\x14\0"s);
+  const auto read = good(late);
+  CHECK(read.signals[0].time_base.runs().size() == 1);
+  CHECK(read.signals[0].time_base.end() == Seconds(6.0));
+  CHECK(has_warning(read, std::to_string(1024 + 2 * kRecordBytes) +
+                              ": warning: record 3 says that it begins at 9 s, but the records around it put "
+                              "it at 2 s; its onset is not used"));
+  CHECK_FALSE(has_warning(read, "a gap of"));
+  CHECK_FALSE(has_warning(read, "records say"));
+  const auto twice = good(with_list(late, 4, "+2.25\x14\x14\0"s));
+  CHECK(twice.signals[0].time_base.runs().size() == 1);
+  CHECK(has_warning(twice, "put it at 2 s (2 such records)"));
+  // A discontinuous file may well pause for a record, but not go back behind it.
+  CHECK(error_of(patched(late, 192, "EDF+D", 44)).code == ErrorCode::damaged);
 }
 
 TEST_CASE("onsets with the rounding of doubles make no gap", "[edf]") {

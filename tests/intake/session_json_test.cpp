@@ -74,6 +74,7 @@ TEST_CASE("nesting is limited, so that no text exhausts the stack", "[session]")
   const auto nested = [](std::size_t depth) { return std::string(depth, '[') + std::string(depth, ']'); };
   CHECK(parse_json(nested(64), "f").ok());
   CHECK(parse_json(nested(65), "f").error().code == ErrorCode::over_limit);
+  CHECK_FALSE(parse_json(nested(65), "f").error().remedy.empty());
   CHECK(parse_json(std::string(1'000'000, '['), "f").error().code == ErrorCode::over_limit);
 }
 

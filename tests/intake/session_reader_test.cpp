@@ -151,6 +151,30 @@ TEST_CASE("faults are named with their line, column, path and what may stand the
         "leave a key out for its default");
 }
 
+TEST_CASE("a skew or a rate that no recorder has is refused with its place", "[session]") {
+  for (const std::string skew : {"1e9", "-1000", "1.001"})
+    CHECK(fault_with("\"skew_s\": 0.0002", "\"skew_s\": " + skew) ==
+          "a.session.json:13:78: error: channels[2].skew_s is " +
+              (skew == "1e9" ? std::string("1e+09") : skew) + "; use a number from -1 to 1 s");
+  CHECK(fault_with("\"skew_s\": 0.0002", "\"skew_s\": -1") == "accepted");
+  for (const std::string rate : {"1e-9", "1e12", "0", "-5"}) {
+    const std::string fault = fault_with("\"rate_hz\": null", "\"rate_hz\": " + rate);
+    CHECK(fault.find("a.session.json:8:36: error: recording.csv.rate_hz is ") == 0);
+    CHECK(fault.find("; use a number from 0.01 to 10000000 Hz") != std::string::npos);
+  }
+  CHECK(fault_with("\"rate_hz\": null", "\"rate_hz\": 0.01") == "accepted");
+}
+
+TEST_CASE("an empty list of channels is blamed itself", "[session]") {
+  std::string text = kWhole;
+  const auto from = text.find("\"channels\": [") + 13, to = text.find("\"pathways\"");
+  text = text.substr(0, from) + "],\n" + text.substr(to);
+  const auto read = parse_session(text, "a.session.json");
+  REQUIRE_FALSE(read.ok());
+  CHECK(read.error().what == "channels is empty");
+  CHECK(read.error().place.line == 9);
+}
+
 TEST_CASE("a missing key is named at the object that should hold it", "[session]") {
   CHECK(
       fault_with("\"source\": \"F\", ", "") ==

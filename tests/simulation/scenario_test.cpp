@@ -186,6 +186,10 @@ TEST_CASE("contradictions are refused before anything is made", "[simulation][sc
     scenario.file.kind = FileKind::edf;
     scenario.file.gaps = {{Seconds(1), Seconds(2)}};
   }
+  SECTION("a gap in a table without times") {
+    scenario.file.csv.time_column.reset();
+    scenario.file.gaps = {{Seconds(1), Seconds(2)}};
+  }
   SECTION("delay and delay_min acted on at once") {
     scenario.agents = {
         {"x", {effect_on(EffectTarget::delay, 1.5, 6, 1), effect_on(EffectTarget::delay_min, 2, 6, 1)}, {}}};
