@@ -85,7 +85,7 @@ struct LeastSquaresSummary {
 /// `scale`: sum of squares that counts as all of the data for Termination::exact_data (sum of y^2); where it
 /// is missing, exact data end as small_step.
 /// Requires: options.check() passes. Accuracy: the 16 NIST StRD sets of the tests, relative 1e-7 or better.
-/// Source: Levenberg 1944; Marquardt 1963; Moré JJ (1978) Lecture Notes in Mathematics 630:105-116 (scaling
+/// Source: Levenberg 1944; Marquardt 1963; Moré JJ (1978) Springer LNM 630:105-116 (scaling
 /// and trust region); Bates DM, Watts DG (1981) Technometrics 23:179-183 (relative offset).
 LeastSquaresSummary solve_nonlinear(const Residuals& residuals, const Vector& start,
                                     const LeastSquaresOptions& options = {},

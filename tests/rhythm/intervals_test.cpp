@@ -1,6 +1,7 @@
 // Chronodrome, GPL-3.0-or-later.
 #include <catch2/catch.hpp>
 
+#include "numerics/robust.h"
 #include "rhythm/intervals.h"
 
 using namespace chronodrome;
@@ -53,4 +54,45 @@ TEST_CASE("low confidence and exclusion are told apart", "[intervals]") {
 TEST_CASE("one beat or none has no interval", "[intervals]") {
   CHECK(flags(beats({})).empty());
   CHECK(flags(beats({1.0})).empty());
+}
+
+TEST_CASE("a rate is that of the mean cycle; the mean of single rates is biased high", "[intervals]") {
+  // In closed form: cycles of 300, 300, 300, 180, 420, 300, 300 ms have a mean of 300 ms (200/min), a median
+  // of 300 ms, an SD of 69.2820 ms; their single rates have a mean of 210.884/min.
+  const double cycles_ms[] = {300, 300, 300, 180, 420, 300, 300};
+  activation::ChannelActivations channel = beats({0.0});
+  for (const double cycle : cycles_ms) {
+    auto mark = channel.marks.back();
+    mark.time += milliseconds(cycle);
+    channel.marks.push_back(mark);
+  }
+  const auto intervals = rhythm::intervals_of(channel, {}, {});
+  std::vector<double> lengths_ms, rates;
+  for (const auto& interval : intervals) {
+    lengths_ms.push_back(in_milliseconds(interval.length));
+    rates.push_back(rate_of(interval.length).value());
+  }
+  using Catch::Matchers::WithinAbs;
+  REQUIRE(intervals.size() == 7);
+  CHECK_THAT(60e3 / numerics::mean(lengths_ms), WithinAbs(200.0, 1e-9));
+  CHECK_THAT(numerics::median(lengths_ms), WithinAbs(300.0, 1e-9));
+  CHECK_THAT(numerics::sd(lengths_ms), WithinAbs(69.2820, 5e-5));
+  CHECK_THAT(numerics::mean(rates), WithinAbs(210.884, 5e-4));
+  CHECK(intervals[3].flag == IntervalFlag::premature);
+}
+
+TEST_CASE("rate by intervals is exact where counting beats is off by one", "[intervals]") {
+  // In closed form: beats at 0, 0.2 ... 60.0 s are 301 beats and 300.000/min by intervals.
+  activation::ChannelActivations channel = beats({0.0});
+  for (int i = 1; i <= 300; ++i) {
+    auto mark = channel.marks.front();
+    mark.time = Seconds(0.2 * i);
+    channel.marks.push_back(mark);
+  }
+  CHECK(channel.marks.size() == 301);
+  const auto intervals = rhythm::intervals_of(channel, {}, {});
+  double total = 0.0;
+  for (const auto& interval : intervals)
+    total += interval.length.value();
+  CHECK_THAT(60.0 * static_cast<double>(intervals.size()) / total, Catch::Matchers::WithinAbs(300.0, 1e-9));
 }
