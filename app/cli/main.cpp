@@ -94,7 +94,12 @@ int run(int argc, char** argv) {
 
 int main(int argc, char** argv) {
   try {
-    return chronodrome::cli::run(argc, argv);
+    const int status = chronodrome::cli::run(argc, argv);
+    if (std::cout.flush()) return status;
+    std::fputs(
+        "chronodrome-cli: error: standard output cannot be written; free some space or choose another file\n",
+        stderr);
+    return chronodrome::cli::kNothingDone;
   } catch (const std::bad_alloc&) {
     std::fputs("chronodrome-cli: error: out of memory; close other programs or analyse fewer sessions at "
                "once (--jobs 1)\n",

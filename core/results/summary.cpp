@@ -107,19 +107,13 @@ void write_flags(JsonText& json, const SessionResult& result) {
   json.open_list("flags");
   for (const auto& row : result.responses.rows) {
     for (const auto& flag : row.flags) {
-      json.open_object()
-          .text("where", "response")
-          .text("curve", std::to_string(row.curve))
-          .text("measure", row.measure);
+      json.open_object().text("where", "response").number("curve", row.curve).text("measure", row.measure);
       json.number("concentration_mol_per_l", row.concentration.value()).text("flag", flag).close_object();
     }
   }
   for (const auto& curve : result.curves) {
     for (const auto& flag : curve.fit.flags) {
-      json.open_object()
-          .text("where", "fit")
-          .text("curve", std::to_string(curve.curve))
-          .text("measure", curve.measure);
+      json.open_object().text("where", "fit").number("curve", curve.curve).text("measure", curve.measure);
       json.text("likelihood", curve.fit.likelihood).text("flag", flag).close_object();
     }
   }

@@ -3,6 +3,8 @@
 #include <filesystem>
 #include <fstream>
 #include <iterator>
+#include <locale>
+#include <sstream>
 
 #include "results/tables.h"
 #include "session/analysis.h"
@@ -71,6 +73,25 @@ TEST_CASE("the same bits for one thread and for three", "[session]") {
     CAPTURE(first[i].name);
     CHECK(first[i].content == second[i].content);
   }
+}
+
+TEST_CASE("files are the same under a locale with a decimal comma and thousands marks", "[session]") {
+  struct Continental : std::numpunct<char> {
+    char do_decimal_point() const override { return ','; }
+    char do_thousands_sep() const override { return '.'; }
+    std::string do_grouping() const override { return "\3"; }
+  };
+  const std::string path = kSamples + "atrial-strip/atrial-strip.session.json";
+  const auto plain = results::result_files(analysed(path), "x");
+  const std::locale before = std::locale::global(std::locale(std::locale::classic(), new Continental));
+  std::ostringstream probe;
+  probe << 1234.5;
+  CHECK(probe.str() == "1.234,5"); // the locale does reach streams
+  const auto continental = results::result_files(analysed(path), "x");
+  std::locale::global(before);
+  REQUIRE(plain.size() == continental.size());
+  for (std::size_t i = 0; i < plain.size(); ++i)
+    CHECK(plain[i].content == continental[i].content);
 }
 
 TEST_CASE("one row a step, curve and measure, the control first", "[session]") {

@@ -131,16 +131,21 @@ void check_beats_and_delays(const Totals& totals) {
   }
 }
 
-/// The simulated heart fluctuates about its long-run response: a window of 30 s scatters by up to 2 % in rate
-/// and delay and 3 % in force (SD). In Wenckebach the window holds few groups: their number is a matter of
-/// chance.
+/// The simulated heart fluctuates about its long-run response, so a window differs from it. Largest
+/// differences measured on the three sessions: rate:RA 3.0 %, delay 1.4 %; force 7.1 % where it is
+/// smallest; 8.3 % in Wenckebach (rate:RV and conducted), where a window holds few groups.
+double largest_difference(const std::string& measure) {
+  if (measure == "rate:RA") return 0.04;
+  return measure == "delay:AV" ? 0.02 : 0.10;
+}
+
 void check_responses_and_rhythm(const std::string& kind, const truth::SessionScore& score) {
   REQUIRE(score.responses.size() >= 18);
   for (const auto& response : score.responses) {
     CAPTURE(kind, response.measure, response.concentration, response.status, response.relative_error);
     const bool read = response.status == "ok" || response.status == "not_steady";
     CHECK(read == (response.true_status == "ok"));
-    CHECK(std::abs(response.relative_error) <= 0.10);
+    CHECK(std::abs(response.relative_error) <= largest_difference(response.measure));
   }
   for (const auto& entry : score.rhythm) {
     CAPTURE(kind, entry.first, entry.second.true_seconds, entry.second.seconds);
