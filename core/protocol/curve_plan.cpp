@@ -81,6 +81,7 @@ private:
   }
 
   Done take_addition(const Event& event, const std::string& key) {
+    if (event.concentration->value() == 0.0) return take_nothing_added(event, key);
     const std::string background = background_text(key);
     if (event.curve) {
       if (auto chosen = choose(event, key, background); !chosen) return chosen.error();
@@ -93,6 +94,20 @@ private:
     const Seconds start = std::clamp(arrival_of(event), Seconds(0.0), end_);
     plan_.curves[running_->curve].steps.push_back({*event.concentration, start, end_, event.line});
     step_open_ = true;
+    return done();
+  }
+
+  /// A final concentration of 0 is no point of a curve beside its control: each curve has one row at 0.
+  Done take_nothing_added(const Event& event, const std::string& key) {
+    if (levels_.count(key) == 0) {
+      warn(event, "an addition of 0 M of " + event.agent + " is taken as vehicle",
+           "write `vehicle` for an addition without agent");
+      return done();
+    }
+    warn(event, "an addition that leaves 0 M of " + event.agent + " is taken as its washout",
+         "write `washout` where an agent is taken out");
+    levels_.erase(key);
+    if (running_ && agent_key(plan_.curves[running_->curve].agent) == key) running_.reset();
     return done();
   }
 
@@ -129,13 +144,14 @@ private:
       if (other != key) curve.background_agents.push_back(level);
     }
     const auto already = levels_.find(key);
+    const Seconds at = std::clamp(event.time, Seconds(0.0), end_);
     if (already != levels_.end()) {
       warn(event,
            "curve " + std::to_string(number) + " of " + curve.agent +
                " has no control: the bath already held " + concentration_text(already->second.concentration),
            "log the washout before the curve");
+      curve.steps.push_back({Molar(0.0), at, at, event.line});
     } else {
-      const Seconds at = std::clamp(event.time, Seconds(0.0), end_);
       curve.steps.push_back({Molar(0.0), std::min(undisturbed_since_, at), at, event.line});
       if (undisturbed_since_ >= at)
         warn(event,

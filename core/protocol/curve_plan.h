@@ -50,8 +50,9 @@ struct CurvePlan {
 /// everything, or of the curve's agent, ends the curve. A step runs from the arrival of its addition to the
 /// next logged addition, vehicle, antagonist, washout or pacing_start, or to the end. The control runs from
 /// the arrival of the last event before the curve's first addition that changes bath or pacing, to that
-/// addition; a curve whose agent was already in the bath has none, and a warning says so. Requires: events in
-/// order of time. Errors: those of follow_bath(); bad_value (column `curve` gives one number to two agents).
+/// addition; that of a curve whose agent was already in the bath has no length, and a warning says so. An
+/// addition of 0 is taken as vehicle, or as washout of an agent that is there, with a warning. Requires:
+/// events in order of time. Errors: those of follow_bath(); bad_value (column `curve` gives one number to two agents).
 Result<CurvePlan> plan_curves(const Protocol& protocol, const BathConditions& conditions,
                               Seconds recording_end);
 

@@ -114,8 +114,8 @@ TEST_CASE("washing out the antagonist alone changes the background and so opens 
                                     event(300, EventKind::addition, "acetylcholine", 1e-6)}),
                             400);
   CHECK(lines_of(plan) == Lines{"1 acetylcholine [atropine 1e-08 M] 0:50-100 1e-07:100-200",
-                                "2 acetylcholine [] 1e-06:300-400"});
-  // The bath still held the agonist: there is no control for the second curve.
+                                "2 acetylcholine [] 0:300-300 1e-06:300-400"});
+  // The bath still held the agonist: the control of the second curve has no length.
   REQUIRE(plan.warnings.size() == 1);
   CHECK(plan.warnings[0].what == "curve 2 of acetylcholine has no control: the bath already held 1e-07 M");
   CHECK(plan.warnings[0].place.line == 5U);
@@ -246,6 +246,28 @@ TEST_CASE("an addition at time zero has a control without length, and is told", 
   const auto plan = planned(log_of({event(0, EventKind::addition, "acetylcholine", 1e-7)}), 100);
   CHECK(lines_of(plan) == Lines{"1 acetylcholine [] 0:0-0 1e-07:0-100"});
   CHECK(plan.warnings.size() == 1);
+}
+
+TEST_CASE("an addition of nothing is vehicle, so that each curve has one row at 0", "[protocol]") {
+  const auto plan = planned(log_of({event(100, EventKind::addition, "acetylcholine", 0.0),
+                                    event(200, EventKind::addition, "acetylcholine", 1e-7),
+                                    event(300, EventKind::addition, "acetylcholine", 1e-6)}),
+                            400);
+  CHECK(lines_of(plan) == Lines{"1 acetylcholine [] 0:100-200 1e-07:200-300 1e-06:300-400"});
+  REQUIRE(plan.warnings.size() == 1);
+  CHECK(plan.warnings[0].what == "an addition of 0 M of acetylcholine is taken as vehicle");
+  CHECK(plan.warnings[0].place.line == 2U);
+}
+
+TEST_CASE("an addition that leaves nothing of its agent ends the curve as a washout does", "[protocol]") {
+  const auto plan = planned(log_of({event(100, EventKind::addition, "acetylcholine", 1e-7),
+                                    event(200, EventKind::addition, "acetylcholine", 0.0),
+                                    event(300, EventKind::addition, "acetylcholine", 1e-7)}),
+                            400);
+  CHECK(lines_of(plan) ==
+        Lines{"1 acetylcholine [] 0:0-100 1e-07:100-200", "2 acetylcholine [] 0:200-300 1e-07:300-400"});
+  REQUIRE(plan.warnings.size() >= 1);
+  CHECK(plan.warnings.back().what == "an addition that leaves 0 M of acetylcholine is taken as its washout");
 }
 
 TEST_CASE("events after the end of the recording are left out and told", "[protocol]") {
