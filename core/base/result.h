@@ -36,6 +36,7 @@ enum class ErrorCode {
   bad_usage,           ///< the caller's words or settings are off
   cannot_write,        ///< output could not be written
   not_enough_data,     ///< the data cannot answer
+  cancelled,           ///< the user stopped the work
   internal_fault,      ///< a bug in Chronodrome
 };
 

@@ -72,6 +72,16 @@ struct Correction {
   std::optional<Seconds> time, to_time;
 };
 
+/// A plateau's window that the user has placed by hand, instead of the one the rule gives. Data like a
+/// correction: replayed on every run.
+struct WindowChoice {
+  int curve = 0;
+  Molar concentration; ///< of the step, as the drug log states it; 0: the control
+  std::string measure; ///< `rate:RA`; empty: every measure of the step
+  Seconds start, end;
+  std::string when, who, why; ///< as in a correction
+};
+
 /// The newest session format that this program writes.
 inline constexpr int kSessionVersion = 1;
 
@@ -89,8 +99,9 @@ struct SessionFile {
   std::optional<std::string> protocol_file; ///< nothing: EDF+ annotations carry the protocol
   std::vector<std::string> measures;
   std::map<std::string, SettingValue> analysis;
-  std::vector<Correction> review; ///< by seq
-  std::string as_read;            ///< the JSON text, so that unknown keys survive load and save
+  std::vector<Correction> review;    ///< by seq
+  std::vector<WindowChoice> windows; ///< as the file lists them; a later one of the same step wins
+  std::string as_read;               ///< the JSON text, so that unknown keys survive load and save
   std::vector<Warning> warnings;
 };
 

@@ -10,6 +10,7 @@
 #include "conduction/conduction.h"
 #include "document/session_file.h"
 #include "pharmacology/curve_fit.h"
+#include "protocol/curve_plan.h"
 #include "protocol/protocol.h"
 #include "recording/recording.h"
 #include "response/response.h"
@@ -45,6 +46,7 @@ struct SessionResult {
   std::string session_sha256;
   std::shared_ptr<const recording::Recording> recording;
   protocol::Protocol protocol;
+  protocol::CurvePlan plan; ///< curves, steps, exclusions and pacing of the drug log
   std::vector<recording::Channel> channels;
   std::vector<activation::ChannelActivations> activations; ///< empty marks for channels that carry no beats
   std::vector<std::vector<rhythm::Interval>> intervals;
