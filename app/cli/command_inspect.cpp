@@ -11,39 +11,6 @@
 namespace chronodrome::cli {
 namespace {
 
-/// One character, or the word tab; nothing for anything else.
-std::optional<char> character(const std::string& word) {
-  if (word == "tab" || word == "\\t") return '\t';
-  return word.size() == 1 ? std::optional(word.front()) : std::nullopt;
-}
-
-Result<intake::ReadSettings> settings_of(const InspectWords& words) {
-  intake::ReadSettings settings;
-  if (words.rate_hz) settings.rate = Hertz(*words.rate_hz);
-  settings.time_column = words.time_column;
-  if (words.delimiter) {
-    settings.delimiter = character(*words.delimiter);
-    if (!settings.delimiter) {
-      return Error{ErrorCode::bad_usage,
-                   words.recording,
-                   {},
-                   "--delimiter \"" + *words.delimiter + "\" is not one character",
-                   "give one, or the word tab"};
-    }
-  }
-  if (words.decimal) {
-    settings.decimal = character(*words.decimal);
-    if (!settings.decimal) {
-      return Error{ErrorCode::bad_usage,
-                   words.recording,
-                   {},
-                   "--decimal \"" + *words.decimal + "\" is not one character",
-                   "give . or ,"};
-    }
-  }
-  return settings;
-}
-
 std::string percent(double share) {
   return fixed_text(100.0 * share, 1);
 }
@@ -89,26 +56,12 @@ std::string recording_text(const recording::Recording& recording,
   return text;
 }
 
-/// The readers speak of the session's keys; on the command line the same is said with options.
-Error with_options(Error error) {
-  const std::pair<const char*, const char*> words[] = {{"recording.csv.rate_hz", "--rate-hz"},
-                                                       {"recording.csv.delimiter", "--delimiter"},
-                                                       {"recording.csv.decimal", "--decimal"},
-                                                       {"recording.csv.time_column", "--time-column"}};
-  for (const auto& [key, option] : words) {
-    const auto at = error.remedy.find(key);
-    if (at != std::string::npos)
-      error.remedy.replace(at, std::string(key).size(), option + std::string(" (in a session: ") + key + ")");
-  }
-  return error;
-}
-
 } // namespace
 
 int inspect(const InspectWords& words) {
-  const auto settings = settings_of(words);
-  if (!settings) return refuse(settings.error());
-  auto read = intake::read_recording(words.recording, *settings);
+  const auto choices = choices_of(words.reading, words.recording);
+  if (!choices) return refuse(choices.error());
+  auto read = intake::read_recording(words.recording, settings_of(*choices));
   if (!read) return refuse(with_options(read.error()));
   const auto recording = std::make_shared<const recording::Recording>(std::move(read).value());
   for (const auto& warning : recording->warnings)

@@ -6,6 +6,7 @@
 #include <vector>
 
 #include "base/result.h"
+#include "reading_words.h"
 
 namespace chronodrome::cli {
 
@@ -15,8 +16,15 @@ enum ExitStatus { kAllDone = 0, kSomeFailed = 1, kWrongUsage = 2, kNothingDone =
 struct InspectWords {
   std::string recording;
   bool json = false;
-  std::optional<double> rate_hz;
-  std::optional<std::string> delimiter, decimal, time_column;
+  ReadingWords reading;
+};
+
+struct PrepareWords {
+  std::string recording;
+  std::optional<std::string> layout, protocol;
+  std::string out;
+  bool replace = false;
+  ReadingWords reading;
 };
 
 struct AnalyseWords {
@@ -38,6 +46,7 @@ struct SimulateWords {
 };
 
 int inspect(const InspectWords& words);
+int prepare(const PrepareWords& words);
 int analyse(const AnalyseWords& words);
 int fit(const FitWords& words);
 int simulate(const SimulateWords& words);

@@ -20,19 +20,39 @@ constexpr const char* kStatuses =
 /// The command chosen on the command line, ready to run.
 struct Chosen {
   InspectWords inspect;
+  PrepareWords prepare;
   AnalyseWords analyse;
   FitWords fit;
   SimulateWords simulate;
 };
 
+void add_reading(CLI::App& command, ReadingWords& words) {
+  command.add_option("--rate-hz", words.rate_hz, "sampling rate of a CSV without a time column");
+  command.add_option("--delimiter", words.delimiter, "of a CSV: one character, or tab");
+  command.add_option("--decimal", words.decimal, "decimal mark of a CSV: . or ,");
+  command.add_option("--time-column", words.time_column, "header of a CSV's time column");
+}
+
 void add_inspect(CLI::App& app, InspectWords& words) {
   auto* command = app.add_subcommand("inspect", "say what a CSV or EDF/EDF+ recording holds");
   command->add_option("RECORDING", words.recording, "the recording")->required();
   command->add_flag("--json", words.json, "as JSON");
-  command->add_option("--rate-hz", words.rate_hz, "sampling rate of a CSV without a time column");
-  command->add_option("--delimiter", words.delimiter, "of a CSV: one character, or tab");
-  command->add_option("--decimal", words.decimal, "decimal mark of a CSV: . or ,");
-  command->add_option("--time-column", words.time_column, "header of a CSV's time column");
+  add_reading(*command, words.reading);
+}
+
+void add_prepare(CLI::App& app, PrepareWords& words) {
+  auto* command = app.add_subcommand(
+      "prepare", "a session from a recording, with roles and pathways guessed or taken from another session");
+  command->add_option("RECORDING", words.recording, "the recording, in the session's folder or below")
+      ->required();
+  command->add_option(
+      "--layout", words.layout,
+      "a session of the same set-up: its channels, pathways, measures and settings are taken");
+  command->add_option("--protocol", words.protocol,
+                      "the drug log (default: protocol.csv beside the recording, or its annotations)");
+  command->add_option("--out", words.out, "the session to write, NAME.session.json")->required();
+  command->add_flag("--replace", words.replace, "write over a session that is there");
+  add_reading(*command, words.reading);
 }
 
 void add_analyse(CLI::App& app, AnalyseWords& words) {
@@ -42,8 +62,7 @@ void add_analyse(CLI::App& app, AnalyseWords& words) {
   command->add_option("--out", words.out, "folder for the results; each session gets DIR/NAME")->required();
   command->add_option("--jobs", words.jobs,
                       "threads to use (default: all cores); does not change any result");
-  command->add_flag("--no-report", words.no_report,
-                    "leave out the report for readers (this version writes tables only)");
+  command->add_flag("--no-report", words.no_report, "leave out report.pdf and report.html");
 }
 
 void add_fit(CLI::App& app, FitWords& words) {
@@ -67,6 +86,7 @@ int run(int argc, char** argv) {
   app.require_subcommand(1);
   Chosen chosen;
   add_inspect(app, chosen.inspect);
+  add_prepare(app, chosen.prepare);
   add_analyse(app, chosen.analyse);
   add_fit(app, chosen.fit);
   add_simulate(app, chosen.simulate);
@@ -84,6 +104,7 @@ int run(int argc, char** argv) {
     return kWrongUsage;
   }
   if (app.got_subcommand("inspect")) return inspect(chosen.inspect);
+  if (app.got_subcommand("prepare")) return prepare(chosen.prepare);
   if (app.got_subcommand("analyse")) return analyse(chosen.analyse);
   if (app.got_subcommand("fit")) return fit(chosen.fit);
   return simulate(chosen.simulate);

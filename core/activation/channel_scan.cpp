@@ -99,7 +99,8 @@ Seconds refractory_of(const recording::Channel& channel, const ActivationSetting
                 : settings.refractory_ventricular.value_or(traits.refractory_ventricular);
 }
 
-Result<ChannelScan> scan_electrogram(const recording::Channel& channel, const ActivationSettings& settings) {
+Result<ChannelScan> scan_electrogram(const recording::Channel& channel, const ActivationSettings& settings,
+                                     const conditioning::Proceed& proceed) {
   ChannelScan scan;
   scan.channel = &channel;
   scan.traits = conditioning::traits_of(settings.conditioning.species);
@@ -107,7 +108,7 @@ Result<ChannelScan> scan_electrogram(const recording::Channel& channel, const Ac
   ElectrogramScan electrogram(channel, settings, scan);
   auto report = conditioning::condition(
       channel, settings.conditioning,
-      [&](const conditioning::ConditionedBlock& block) { electrogram.receive(block); });
+      [&](const conditioning::ConditionedBlock& block) { electrogram.receive(block); }, proceed);
   if (!report.ok()) return report.error();
   scan.report = std::move(report).value();
   scan.noise = electrogram.finish();

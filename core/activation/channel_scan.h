@@ -42,6 +42,7 @@ constexpr Seconds kQualityWindow{10.0};
 Seconds refractory_of(const recording::Channel& channel, const ActivationSettings& settings);
 
 /// Reads an electrogram once, block by block. Errors: those of conditioning::condition.
-Result<ChannelScan> scan_electrogram(const recording::Channel& channel, const ActivationSettings& settings);
+Result<ChannelScan> scan_electrogram(const recording::Channel& channel, const ActivationSettings& settings,
+                                     const conditioning::Proceed& proceed);
 
 } // namespace chronodrome::activation

@@ -30,12 +30,13 @@ struct Pending {
 };
 
 /// A channel without activations: only what cannot be read.
-Result<ChannelScan> scan_plain(const recording::Channel& channel, const ActivationSettings& settings) {
+Result<ChannelScan> scan_plain(const recording::Channel& channel, const ActivationSettings& settings,
+                               const conditioning::Proceed& proceed) {
   ChannelScan scan;
   scan.channel = &channel;
   scan.traits = conditioning::traits_of(settings.conditioning.species);
-  auto report =
-      conditioning::condition(channel, settings.conditioning, [](const conditioning::ConditionedBlock&) {});
+  auto report = conditioning::condition(
+      channel, settings.conditioning, [](const conditioning::ConditionedBlock&) {}, proceed);
   if (!report.ok()) return report.error();
   scan.report = std::move(report).value();
   return scan;
@@ -51,12 +52,13 @@ ChannelActivations finish_plain(const ChannelScan& scan) {
   return result;
 }
 
-Pending first_pass(const recording::Channel& channel, const ActivationSettings& settings) {
+Pending first_pass(const recording::Channel& channel, const ActivationSettings& settings,
+                   const conditioning::Proceed& proceed) {
   Pending pending;
   const bool electrical = recording::is_electrogram(channel.role);
-  auto scan = electrical                               ? scan_electrogram(channel, settings)
-              : recording::is_mechanical(channel.role) ? scan_mechanical(channel, settings)
-                                                       : scan_plain(channel, settings);
+  auto scan = electrical                               ? scan_electrogram(channel, settings, proceed)
+              : recording::is_mechanical(channel.role) ? scan_mechanical(channel, settings, proceed)
+                                                       : scan_plain(channel, settings, proceed);
   if (!scan.ok()) {
     pending.error = scan.error();
     return pending;
@@ -231,31 +233,37 @@ std::string name_of(Origin origin) {
 Result<ChannelActivations> compute(const recording::Channel& channel, const ActivationSettings& settings) {
   if (auto error = settings.check()) return *error;
   std::vector<Pending> pendings;
-  pendings.push_back(first_pass(channel, settings));
+  pendings.push_back(first_pass(channel, settings, {}));
   look_across(pendings, settings);
   return std::move(finish_all(pendings, std::span(&channel, 1), settings, 1).front());
 }
 
 std::vector<Result<ChannelActivations>> compute_all(std::span<const recording::Channel> channels,
-                                                    const ActivationSettings& settings, unsigned threads) {
-  std::vector<Result<ChannelActivations>> results;
-  if (auto error = settings.check()) {
-    for (std::size_t i = 0; i < channels.size(); ++i)
-      results.emplace_back(*error);
-    return results;
-  }
+                                                    const ActivationSettings& settings, unsigned threads,
+                                                    const Proceed& proceed) {
+  if (auto error = settings.check()) return std::vector<Result<ChannelActivations>>(channels.size(), *error);
+  const auto asking_for = [&proceed](const recording::Channel& channel) {
+    if (!proceed) return conditioning::Proceed();
+    return conditioning::Proceed(
+        [&proceed, &channel](std::size_t samples) { return proceed(channel, samples); });
+  };
   ActivationSettings blanking = settings;
   for (const recording::Channel& channel : channels) {
     if (channel.role != recording::Role::stimulus || channel.time_base().size() == 0) continue;
-    const auto spans = blanked_by(find_stimuli(channel));
+    const auto spans = blanked_by(find_stimuli(channel, asking_for(channel)));
     blanking.conditioning.blanked.insert(blanking.conditioning.blanked.end(), spans.begin(), spans.end());
   }
   std::sort(blanking.conditioning.blanked.begin(), blanking.conditioning.blanked.end(),
             [](const recording::Span& a, const recording::Span& b) { return a.start < b.start; });
   std::vector<Pending> pendings(channels.size());
   parallel_for(channels.size(), threads, [&](std::size_t i) {
-    pendings[i] = first_pass(channels[i], recording::is_electrogram(channels[i].role) ? blanking : settings);
+    pendings[i] = first_pass(channels[i], recording::is_electrogram(channels[i].role) ? blanking : settings,
+                             asking_for(channels[i]));
   });
+  for (const Pending& pending : pendings) {
+    const bool is_stopped = pending.error && pending.error->code == ErrorCode::cancelled;
+    if (is_stopped) return std::vector<Result<ChannelActivations>>(channels.size(), *pending.error);
+  }
   look_across(pendings, settings);
   return finish_all(pendings, channels, settings, threads);
 }

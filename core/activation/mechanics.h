@@ -38,7 +38,8 @@ MechanicalBeat beat_of(const Twitch& twitch, Seconds time, Seconds foot, Seconds
 
 /// Reads tension or pressure once: candidates for beats, spaced by the refractory time plus 20 ms.
 /// Errors: those of conditioning::condition.
-Result<ChannelScan> scan_mechanical(const recording::Channel& channel, const ActivationSettings& settings);
+Result<ChannelScan> scan_mechanical(const recording::Channel& channel, const ActivationSettings& settings,
+                                    const conditioning::Proceed& proceed);
 
 /// The beats among the candidates: steepest rise of at least twitch_share times the local one (upper
 /// quartile, within +-10 s, of those that reach a fifth of the second largest) and above six times what the

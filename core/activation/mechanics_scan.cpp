@@ -154,7 +154,8 @@ private:
 
 } // namespace
 
-Result<ChannelScan> scan_mechanical(const recording::Channel& channel, const ActivationSettings& settings) {
+Result<ChannelScan> scan_mechanical(const recording::Channel& channel, const ActivationSettings& settings,
+                                    const conditioning::Proceed& proceed) {
   ChannelScan scan;
   scan.channel = &channel;
   scan.traits = conditioning::traits_of(settings.conditioning.species);
@@ -162,7 +163,7 @@ Result<ChannelScan> scan_mechanical(const recording::Channel& channel, const Act
   MechanicalScan mechanical(channel, settings, scan);
   auto report = conditioning::condition(
       channel, settings.conditioning,
-      [&](const conditioning::ConditionedBlock& block) { mechanical.receive(block); });
+      [&](const conditioning::ConditionedBlock& block) { mechanical.receive(block); }, proceed);
   if (!report.ok()) return report.error();
   scan.report = std::move(report).value();
   scan.noise = mechanical.finish();

@@ -20,13 +20,15 @@ struct Cell {
   double level = 0.0, noise = 0.0, low = 0.0, high = 0.0;
 };
 
-std::vector<Cell> cells_of(const recording::Channel& channel, const recording::Run& run) {
+std::vector<Cell> cells_of(const recording::Channel& channel, const recording::Run& run,
+                           const conditioning::Proceed& proceed) {
   const auto length =
       std::max<std::size_t>(16, static_cast<std::size_t>(kCell_s * channel.time_base().rate().value()));
   std::vector<Cell> cells;
   std::vector<double> samples;
   std::vector<double> some;
   for (std::size_t at = 0; at < run.count; at += length) {
+    if (proceed && !proceed(0)) return cells;
     samples.resize(std::min(length, run.count - at));
     channel.read(run.first + at, samples);
     const std::size_t stride = std::max<std::size_t>(1, samples.size() / kSampled);
@@ -53,12 +55,12 @@ double threshold_of(const std::vector<Cell>& cells, std::size_t at) {
 
 } // namespace
 
-std::vector<Stimulus> find_stimuli(const recording::Channel& channel) {
+std::vector<Stimulus> find_stimuli(const recording::Channel& channel, const conditioning::Proceed& proceed) {
   std::vector<Stimulus> found;
   const Seconds period = period_of(channel.time_base().rate());
   std::vector<double> samples;
   for (const recording::Run& run : channel.time_base().runs()) {
-    const std::vector<Cell> cells = cells_of(channel, run);
+    const std::vector<Cell> cells = cells_of(channel, run, proceed);
     bool inside = false;
     Stimulus stimulus;
     const auto close = [&](std::size_t end) {
@@ -72,6 +74,7 @@ std::vector<Stimulus> find_stimuli(const recording::Channel& channel) {
       }
     };
     for (std::size_t c = 0; c < cells.size(); ++c) {
+      if (proceed && !proceed(0)) return found;
       const double threshold = threshold_of(cells, c);
       samples.resize(cells[c].end - cells[c].first);
       channel.read(cells[c].first, samples);

@@ -3,6 +3,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <utility>
 
 #include "base/number_text.h"
 #include "conditioning/block_maker.h"
@@ -39,15 +40,19 @@ std::vector<UnreadableRange> in_order(std::vector<UnreadableRange> ranges) {
 
 class ChannelConditioner {
 public:
-  ChannelConditioner(const recording::Channel& channel, const ConditioningSettings& settings)
-      : channel_(channel), settings_(settings), maker_(channel, settings) {}
+  ChannelConditioner(const recording::Channel& channel, const ConditioningSettings& settings,
+                     const std::function<void(const ConditionedBlock&)>& receive, const Proceed& proceed)
+      : channel_(channel), settings_(settings), receive_(receive), proceed_(proceed),
+        maker_(channel, settings) {}
 
-  ConditioningReport run(const std::function<void(const ConditionedBlock&)>& receive) {
+  Result<ConditioningReport> run() {
     for (const recording::Span& gap : channel_.time_base().gaps())
       add({gap.start + channel_.skew, gap.end + channel_.skew}, "gap");
     const auto& runs = channel_.time_base().runs();
-    for (std::size_t r = 0; r < runs.size(); ++r)
-      pass_run(r, runs[r], receive);
+    for (std::size_t r = 0; r < runs.size(); ++r) {
+      if (!pass_run(r, runs[r])) return stopped();
+    }
+    if (!may_proceed()) return stopped();
     ConditioningReport report;
     report.unreadable = in_order(std::move(unreadable_));
     report.warnings = maker_.warnings();
@@ -59,24 +64,30 @@ public:
   }
 
 private:
-  void pass_run(std::size_t index, const recording::Run& run,
-                const std::function<void(const ConditionedBlock&)>& receive) {
+  bool may_proceed() { return !proceed_ || proceed_(std::exchange(passed_, 0)); }
+
+  /// False: stopped before its end.
+  bool pass_run(std::size_t index, const recording::Run& run) {
     const double fs = channel_.time_base().rate().value();
     if (static_cast<double>(run.count) < std::max(32.0, kShortestRun.value() * fs)) {
       add_samples(run.first, run.first + run.count, "short");
-      return;
+      passed_ += run.count;
+      return true;
     }
     const auto core = std::max(settings_.block_samples, static_cast<std::size_t>(90.0 * fs));
     StillWatch still(channel_.time_base().rate(), run.first, run.count);
     for (std::size_t at = 0; at < run.count; at += core) {
+      if (!may_proceed()) return false;
       const ConditionedBlock& block = maker_.make(index, at, std::min(run.count, at + core), still);
       for (const SampleRange& bad : maker_.saturated())
         add_samples(std::max(bad.first, block.core_first), std::min(bad.end, block.core_end), "saturation");
       keep_hum(block);
-      receive(block);
+      receive_(block);
+      passed_ += block.core_end - block.core_first;
     }
     for (const SampleRange& flat : still.flat_lines())
       add_samples(flat.first, flat.end, "flat");
+    return true;
   }
 
   void keep_hum(const ConditionedBlock& block) {
@@ -102,6 +113,9 @@ private:
 
   const recording::Channel& channel_;
   const ConditioningSettings& settings_;
+  const std::function<void(const ConditionedBlock&)>& receive_;
+  const Proceed& proceed_;
+  std::size_t passed_ = 0; ///< samples since the caller was asked last
   BlockMaker maker_;
   std::vector<UnreadableRange> unreadable_;
   std::vector<double> frequencies_;
@@ -133,8 +147,17 @@ std::optional<Error> ConditioningSettings::check() const {
   return std::nullopt;
 }
 
+Error stopped() {
+  return {ErrorCode::cancelled,
+          "",
+          {},
+          "the work was stopped before its end",
+          "start it again when it is wanted"};
+}
+
 Result<ConditioningReport> condition(const recording::Channel& channel, const ConditioningSettings& settings,
-                                     const std::function<void(const ConditionedBlock&)>& receive) {
+                                     const std::function<void(const ConditionedBlock&)>& receive,
+                                     const Proceed& proceed) {
   if (auto error = settings.check()) return *error;
   if (channel.time_base().size() == 0) {
     return Error{ErrorCode::not_enough_data,
@@ -143,7 +166,7 @@ Result<ConditioningReport> condition(const recording::Channel& channel, const Co
                  "channel " + channel.label + " holds no samples",
                  "choose another source for the channel"};
   }
-  return ChannelConditioner(channel, settings).run(receive);
+  return ChannelConditioner(channel, settings, receive, proceed).run();
 }
 
 } // namespace chronodrome::conditioning

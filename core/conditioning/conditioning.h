@@ -73,13 +73,21 @@ struct ConditioningReport {
   std::string method;        ///< filters in words, for the report
 };
 
+/// Asked before every block and after the last one, with the samples that have passed since it was asked
+/// before. False: the work is to end.
+using Proceed = std::function<bool(std::size_t samples)>;
+
+/// The error of work that its caller has stopped.
+Error stopped();
+
 /// Prepares `channel` block by block, in order, and hands each block to `receive`. Blocks lie on a grid that
 /// counts from the start of each run; every value depends only on the signal within `context` of it.
 /// Electrograms: mains removed, mild low-pass for timing, high-passed copy for detection. Tension and
 /// pressure: zero-phase low-pass only. Other roles: as they are, `detection` stays empty.
-/// Errors: bad_usage (settings), not_enough_data (a channel without samples).
+/// Errors: bad_usage (settings), not_enough_data (a channel without samples), cancelled (`proceed` said no).
 /// Memory: about 7 * (a block's samples + 2 * context * rate) doubles, whatever the length of the recording.
 Result<ConditioningReport> condition(const recording::Channel& channel, const ConditioningSettings& settings,
-                                     const std::function<void(const ConditionedBlock&)>& receive);
+                                     const std::function<void(const ConditionedBlock&)>& receive,
+                                     const Proceed& proceed = {});
 
 } // namespace chronodrome::conditioning

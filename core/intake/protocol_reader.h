@@ -22,4 +22,12 @@ Result<protocol::Protocol> read_protocol(const std::string& path);
 /// The same from a text. Never throws on any bytes.
 Result<protocol::Protocol> parse_protocol(const std::string& text, const std::string& file);
 
+/// A drug log as it is pasted from a spreadsheet. As parse_protocol(), and: the delimiter is the one of tab,
+/// semicolon and comma under which the first row is a header or an event; without a header the columns are
+/// time_s, event, agent, concentration, unit and note; between tabs or semicolons numbers may have a decimal
+/// comma. `name` stands for the file in messages and in Protocol::file.
+/// Errors: as parse_protocol(); ambiguous (1,250 where no other number tells whether it is 1.25 or 1250;
+/// decimal points beside decimal commas). Never throws on any bytes.
+Result<protocol::Protocol> protocol_from_text(const std::string& text, const std::string& name);
+
 } // namespace chronodrome::intake

@@ -31,8 +31,8 @@ char delimiter_of(std::string_view text) {
 
 class TableSplitter {
 public:
-  TableSplitter(std::string_view text, std::string file)
-      : text_(text), file_(std::move(file)), delimiter_(delimiter_of(text)) {}
+  TableSplitter(std::string_view text, std::string file, char delimiter)
+      : text_(text), file_(std::move(file)), delimiter_(delimiter) {}
 
   Result<std::vector<TableRow>> split() {
     const auto bad = std::min(first_not_utf8(text_), text_.find('\0'));
@@ -138,7 +138,11 @@ private:
 } // namespace
 
 Result<std::vector<TableRow>> split_table(std::string_view text, const std::string& file) {
-  return TableSplitter(without_byte_order_mark(text), file).split();
+  return split_table(text, file, delimiter_of(without_byte_order_mark(text)));
+}
+
+Result<std::vector<TableRow>> split_table(std::string_view text, const std::string& file, char delimiter) {
+  return TableSplitter(without_byte_order_mark(text), file, delimiter).split();
 }
 
 } // namespace chronodrome::intake

@@ -29,5 +29,7 @@ struct TableRow {
 /// row. Errors: damaged (a quote that is never closed, text behind a closing quote), wrong_format (bytes that
 /// are not UTF-8, a zero byte), with line and column.
 Result<std::vector<TableRow>> split_table(std::string_view text, const std::string& file);
+/// The same with the delimiter given.
+Result<std::vector<TableRow>> split_table(std::string_view text, const std::string& file, char delimiter);
 
 } // namespace chronodrome::intake

@@ -238,6 +238,7 @@ Result<SessionFile> parse_session(const std::string& text, const std::string& pa
   read_protocol_choice(root, session, notes);
   read_analysis(root, session, notes);
   if (!notes.failed()) read_review(root, session, notes);
+  if (!notes.failed()) read_windows(root, session, notes);
   root.finish();
   if (notes.failed()) return *notes.error;
   session.as_read = std::string(without_byte_order_mark(text));

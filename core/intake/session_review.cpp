@@ -75,9 +75,7 @@ void read_correction(const JsonValue& item, const std::string& path, SessionFile
     if (!notes.failed() && !numbers.insert(correction.seq).second)
       fields.refuse("seq", *fields.find("seq"), "give every correction a number of its own");
   }
-  correction.when = fields.text("when");
-  if (!correction.when.empty() && !is_moment(correction.when))
-    fields.refuse("when", *fields.find("when"), "write it as 2026-03-04T09:30:00Z (ISO 8601)");
+  correction.when = read_moment(fields);
   correction.who = fields.text("who");
   correction.why = fields.text("why");
   const auto kind =
@@ -97,6 +95,13 @@ void read_correction(const JsonValue& item, const std::string& path, SessionFile
 }
 
 } // namespace
+
+std::string read_moment(JsonObject& fields) {
+  const std::string when = fields.text("when");
+  if (!when.empty() && !is_moment(when))
+    fields.refuse("when", *fields.find("when"), "write it as 2026-03-04T09:30:00Z (ISO 8601)");
+  return when;
+}
 
 void read_review(JsonObject& root, SessionFile& session, JsonNotes& notes) {
   std::set<int> numbers;

@@ -148,9 +148,9 @@ std::optional<double> fitted_response(const CurveFit& fit, Molar concentration) 
     if (!pec50 || !nh || !s) return std::nullopt;
     const double x = concentration.value() == 0.0 ? -INFINITY : std::log10(concentration.value());
     const double theta[3] = {-*pec50, std::log(*nh), std::log(*s)};
-    double h = 0.0;
-    RichardsShape().evaluate(theta, {&x, 1}, &h, nullptr);
-    return *basal + (*emax - *basal) * h;
+    double h[2] = {}; // the function and its complement
+    RichardsShape().evaluate(theta, {&x, 1}, h, nullptr);
+    return *basal + (*emax - *basal) * h[0];
   }
   const auto g = hill(value("pec50"), value("nh"));
   return g ? std::optional(*basal + (*emax - *basal) * *g) : std::nullopt;

@@ -8,6 +8,7 @@
 #include "base/number_text.h"
 #include "numerics/robust.h"
 #include "response/measurement.h"
+#include "response/placed_windows.h"
 #include "response/plateau.h"
 #include "response/window.h"
 
@@ -30,7 +31,7 @@ public:
              const std::vector<protocol::Stretch>& paced, const Settings& settings)
       : curve_(curve), measure_(measure), measurement_(measurement), paced_(paced), settings_(settings) {}
 
-  Response read(const protocol::Step& step) {
+  Response read(const protocol::Step& step, const std::optional<PlacedWindow>& placed) {
     Response row;
     row.curve = curve_.number;
     row.agent = curve_.agent;
@@ -38,9 +39,11 @@ public:
     row.concentration = step.concentration;
     row.measure = measure_;
     row.unit = measurement_.unit;
-    const Window window = window_of(step, measurement_.beats, settings_);
+    const Window window =
+        placed ? Window{placed->span, {}, false} : window_of(step, measurement_.beats, settings_);
     row.window_start = window.span.start;
     row.window_end = window.span.end;
+    if (placed) tell_of_placing(*placed, step, row);
     if (window.span.end <= window.span.start) {
       row.status = Status::unreadable;
       row.flags.push_back(step.concentration.value() == 0.0
@@ -59,6 +62,16 @@ public:
   }
 
 private:
+  static void tell_of_placing(const PlacedWindow& placed, const protocol::Step& step, Response& row) {
+    row.is_placed = true;
+    row.flags.push_back("window placed by hand");
+    if (placed.clipped) row.flags.push_back("the window reached beyond the recording and is cut");
+    if (placed.span.start < step.start || placed.span.end > step.end) {
+      row.flags.push_back("the window reaches beyond its step, which runs from " + in_seconds(step.start) +
+                          " to " + in_seconds(step.end));
+    }
+  }
+
   /// Sets the status of a window that is mostly excluded or unreadable, taken together; flags any part.
   bool is_lost(const Span& span, Response& row) const {
     const double length = (span.end - span.start).value();
@@ -131,12 +144,13 @@ private:
   }
 
   void test_plateau(const protocol::Step& step, const Span& span, Response& row) const {
-    const Seconds length = std::min(span.end - span.start, (step.end - step.start) / 3.0);
+    // The three end with the window: with the step, unless a hand has placed it.
+    const Seconds length = std::min(span.end - span.start, (span.end - step.start) / 3.0);
     std::array<double, 3> means{};
     std::array<double, 3> errors{};
     for (std::size_t k = 0; k < 3; ++k) {
-      const Span part{step.end - length * static_cast<double>(3 - k),
-                      step.end - length * static_cast<double>(2 - k)};
+      const Span part{span.end - length * static_cast<double>(3 - k),
+                      span.end - length * static_cast<double>(2 - k)};
       const Reading reading = measurement_.read(part);
       if (!reading.value || reading.n_values < kFewestValues) {
         row.flags.push_back("too few values for a plateau test");
@@ -234,12 +248,15 @@ Result<Responses> compute(const Inputs& inputs, const Settings& settings) {
     if (!measurement) return measurement.error();
     measurements.push_back(std::move(*measurement));
   }
+  const PlacedWindows placed(*inputs.plan, inputs.placed, inputs.measures, inputs.end);
   Responses responses;
-  for (const auto& curve : inputs.plan->curves) {
+  responses.warnings = placed.warnings();
+  for (std::size_t c = 0; c < inputs.plan->curves.size(); ++c) {
+    const auto& curve = inputs.plan->curves[c];
     for (std::size_t m = 0; m < measurements.size(); ++m) {
       StepReader reader(curve, inputs.measures[m], *measurements[m], inputs.plan->paced, settings);
-      for (const auto& step : curve.steps)
-        responses.rows.push_back(reader.read(step));
+      for (std::size_t s = 0; s < curve.steps.size(); ++s)
+        responses.rows.push_back(reader.read(curve.steps[s], placed.of(c, s, inputs.measures[m])));
     }
   }
   return responses;

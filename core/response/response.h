@@ -10,6 +10,7 @@
 #include "base/quantity.h"
 #include "base/result.h"
 #include "conduction/conduction.h"
+#include "document/session_file.h"
 #include "protocol/curve_plan.h"
 #include "recording/recording.h"
 
@@ -34,12 +35,13 @@ struct Response {
   std::string limit_side;      ///< "at_least" or "at_most"
   /// Read from conducted beats while others were blocked, or of a chamber that was not driven beat by beat.
   bool is_selected = false;
+  bool is_placed = false;         ///< the window was placed by hand; the first of the flags says so too
   std::vector<std::string> flags; ///< in words, for the summary
 };
 
 struct Responses {
-  std::vector<Response> rows; ///< by curve, measure (session order), concentration in order of time
-  std::vector<Warning> warnings;
+  std::vector<Response> rows;    ///< by curve, measure (session order), concentration in order of time
+  std::vector<Warning> warnings; ///< windows placed by hand that have no effect, and why
 };
 
 /// A channel as the stages before left it.
@@ -75,7 +77,9 @@ struct Inputs {
   std::vector<PathwayInput> pathways;
   std::vector<FlowSeries> flows;
   std::vector<Exclusion> excluded;
-  std::vector<std::string> measures; ///< in the session's order
+  std::vector<std::string> measures;          ///< in the session's order
+  std::vector<document::WindowChoice> placed; ///< by hand; each replaces the rule's window of its step
+  Seconds end;                                ///< of the recording: no placed window reaches beyond it
 };
 
 /// How the value of a step is read. Exposed as `response.window_s`, `response.window_beats` ...
@@ -100,7 +104,9 @@ struct Settings {
 ///
 /// Window: the last max(`window`, `window_beats` cycles) of the step, at most `max_share` of it. The cycle is
 /// the median of the last 20 intervals of the step, so that a heart that has stopped does not stretch its
-/// window back into the time when it still beat. For pathways the beats are those of `from`.
+/// window back into the time when it still beat. For pathways the beats are those of `from`. A window that
+/// was placed by hand (placed_windows.h) stands instead, clipped to the recording; all else is read from it
+/// as from the rule's, and the plateau test ends where it ends.
 ///
 /// Values (n_beats in brackets):
 /// - `rate`, bpm: 60 times the number of intervals over their sum, which is 60 (N - 1)/(t_N - t_1) where all
@@ -135,7 +141,8 @@ struct Settings {
 /// window comes first), exceeds `complete_block_time`. Only neighbours stand in a row: an activation of
 /// `from` that is no attempt ends it.
 ///
-/// Requires: plan and every pointer set; marks, rows and stretches in order of time.
+/// Requires: plan and every pointer set; marks, rows and stretches in order of time; `end` where windows are
+/// placed.
 /// Errors: bad_usage (settings; a measure that names no channel, pathway or flow series of the inputs).
 Result<Responses> compute(const Inputs& inputs, const Settings& settings);
 

@@ -7,14 +7,18 @@
 
 namespace chronodrome::results {
 
-std::string text_cell(std::string_view text) {
+std::string without_formula(std::string_view text) {
   std::string cell;
   if (!text.empty()) {
     const auto first = static_cast<unsigned char>(text.front());
     const bool formula = text.find_first_of("=+-@") == 0 || first < 0x20 || first == 0x7f;
     if (formula) cell += '\'';
   }
-  cell += text;
+  return cell += text;
+}
+
+std::string text_cell(std::string_view text) {
+  std::string cell = without_formula(text);
   if (cell.find_first_of(",\"\r\n") == std::string::npos) return cell;
   std::string quoted = "\"";
   for (const char c : cell) {

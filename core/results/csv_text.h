@@ -9,6 +9,10 @@
 
 namespace chronodrome::results {
 
+/// A text that a spreadsheet would take for a formula, or that begins with a control character, with a
+/// leading apostrophe; any other as it is.
+std::string without_formula(std::string_view text);
+
 /// A cell of a table file: quoted where it must be (RFC 4180); a text that a spreadsheet would take for a
 /// formula, or that begins with a control character, gets a leading apostrophe.
 std::string text_cell(std::string_view text);

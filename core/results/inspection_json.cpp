@@ -1,7 +1,7 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "results/inspection_json.h"
 
-#include "results/json_text.h"
+#include "base/json_text.h"
 
 namespace chronodrome::results {
 namespace {

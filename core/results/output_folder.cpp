@@ -144,6 +144,12 @@ Done write_whole_file(const std::string& path, const std::string& content) {
   return put_in_place(path);
 }
 
+Done write_behind_links(const std::string& path, const std::string& content) {
+  std::error_code fault;
+  const auto target = fs::weakly_canonical(path, fault);
+  return write_whole_file(fault ? path : target.string(), content);
+}
+
 Done write_output_folder(const std::string& folder, std::span<const OutputFile> files) {
   std::error_code failed;
   fs::create_directories(folder, failed);

@@ -31,4 +31,7 @@ Done write_output_folder(const std::string& folder, std::span<const OutputFile> 
 /// Writes one file through a temporary name beside it.
 Done write_whole_file(const std::string& path, const std::string& content);
 
+/// The same, but where `path` is a symbolic link, the file that it leads to is replaced, not the link.
+Done write_behind_links(const std::string& path, const std::string& content);
+
 } // namespace chronodrome::results

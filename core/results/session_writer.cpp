@@ -1,14 +1,12 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "results/session_writer.h"
 
-#include <filesystem>
-#include <functional>
 #include <map>
 #include <nlohmann/json.hpp>
 #include <set>
 
+#include "base/json_text.h"
 #include "base/number_text.h"
-#include "results/json_text.h"
 #include "results/output_folder.h"
 
 namespace chronodrome::results {
@@ -39,20 +37,34 @@ Json member(const Json& object, const std::string& key) {
   return object.is_object() && object.contains(key) ? object.at(key) : Json();
 }
 
+/// The members that tell an entry of a list from the others. A number is the same with and without a point.
+std::string identity_of(const Json& entry, const std::vector<std::string>& keys) {
+  std::string identity;
+  for (const auto& key : keys) {
+    const Json value = member(entry, key);
+    identity += (value.is_number() ? exact_text(value.get<double>()) : value.dump()) + ' ';
+  }
+  return identity;
+}
+
 /// Adds to every object of a list the unknown keys of the entry that it was read from: the one with the same
-/// `identity`, or else the one in its place, unless another entry now has that one's identity.
-void keep_unknown_of_entries(Json& list, const Json& before, const std::string& identity, const Keys& known) {
+/// identity (the first of several, unless one of them is in its place), or else the one in its place, unless
+/// another entry now has that one's identity.
+void keep_unknown_of_entries(Json& list, const Json& before, const std::vector<std::string>& identity,
+                             const Keys& known) {
   if (!before.is_array()) return;
   std::map<std::string, const Json*> entries;
   std::set<std::string> now;
-  const auto name_of = [&](const Json& entry) { return member(entry, identity).dump(); };
+  const auto name_of = [&](const Json& entry) { return identity_of(entry, identity); };
   for (const auto& entry : before)
     entries.emplace(name_of(entry), &entry);
   for (const auto& entry : list)
     now.insert(name_of(entry));
   for (std::size_t i = 0; i < list.size(); ++i) {
     const auto same = entries.find(name_of(list[i]));
-    if (same != entries.end()) {
+    if (i < before.size() && name_of(before[i]) == name_of(list[i])) {
+      keep_unknown(list[i], before[i], known);
+    } else if (same != entries.end()) {
       keep_unknown(list[i], *same->second, known);
     } else if (i < before.size() && now.count(name_of(before[i])) == 0) {
       keep_unknown(list[i], before[i], known);
@@ -93,7 +105,7 @@ Json recording_of(const SessionFile& session, const Json& before) {
     if (file.sha256) entry["sha256"] = *file.sha256;
     files.push_back(std::move(entry));
   }
-  keep_unknown_of_entries(files, member(before, "files"), "path", {"path", "sha256"});
+  keep_unknown_of_entries(files, member(before, "files"), {"path"}, {"path", "sha256"});
   Json csv = {{"rate_hz", number_or_null(session.csv.rate_hz)},
               {"delimiter", mark_or_null(session.csv.delimiter)},
               {"decimal", mark_or_null(session.csv.decimal)},
@@ -121,7 +133,7 @@ Json channels_of(const SessionFile& session, const Json& before) {
     list.push_back(std::move(entry));
   }
   keep_unknown_of_entries(
-      list, before, "label",
+      list, before, {"label"},
       {"source", "label", "role", "lead", "unit", "invert", "position_mm", "calibration", "skew_s"});
   return list;
 }
@@ -134,7 +146,7 @@ Json pathways_of(const SessionFile& session, const Json& before) {
                     {"to", pathway.to},
                     {"distance_mm", number_or_null(pathway.distance_mm)}});
   }
-  keep_unknown_of_entries(list, before, "label", {"label", "from", "to", "distance_mm"});
+  keep_unknown_of_entries(list, before, {"label"}, {"label", "from", "to", "distance_mm"});
   return list;
 }
 
@@ -158,8 +170,26 @@ Json review_of(const SessionFile& session, const Json& before) {
     entry["why"] = correction.why;
     list.push_back(std::move(entry));
   }
-  keep_unknown_of_entries(list, before, "seq",
+  keep_unknown_of_entries(list, before, {"seq"},
                           {"seq", "when", "who", "what", "channel", "time_s", "to_time_s", "why"});
+  return list;
+}
+
+Json windows_of(const SessionFile& session, const Json& before) {
+  Json list = Json::array();
+  for (const auto& window : session.windows) {
+    list.push_back({{"curve", window.curve},
+                    {"concentration_mol_per_l", window.concentration.value()},
+                    {"measure", window.measure.empty() ? Json(nullptr) : Json(window.measure)},
+                    {"start_s", window.start.value()},
+                    {"end_s", window.end.value()},
+                    {"when", window.when},
+                    {"who", window.who},
+                    {"why", window.why}});
+  }
+  keep_unknown_of_entries(
+      list, before, {"curve", "concentration_mol_per_l", "measure"},
+      {"curve", "concentration_mol_per_l", "measure", "start_s", "end_s", "when", "who", "why"});
   return list;
 }
 
@@ -177,7 +207,10 @@ Json json_of(const SessionFile& session) {
                {"measures", Json(session.measures)},
                {"analysis", analysis_of(session)},
                {"review", review_of(session, member(before, "review"))}};
-  keep_unknown(json, before, keys_of(json));
+  if (!session.windows.empty()) json["windows"] = windows_of(session, member(before, "windows"));
+  Keys known = keys_of(json);
+  known.insert("windows"); // the last one may have gone
+  keep_unknown(json, before, known);
   return json;
 }
 
@@ -239,9 +272,7 @@ Done write_session(const SessionFile& session, const std::string& path) {
                  "a newer program wrote this session (version " + std::to_string(session.version) + ")",
                  "save it with that program: this one could lose what it does not know"};
   }
-  std::error_code fault;
-  const auto target = std::filesystem::weakly_canonical(path, fault);
-  return write_whole_file(fault ? path : target.string(), session_text(session));
+  return write_behind_links(path, session_text(session));
 }
 
 } // namespace chronodrome::results

@@ -1,8 +1,8 @@
 // Chronodrome, GPL-3.0-or-later.
 #include <array>
 
+#include "base/json_text.h"
 #include "base/number_text.h"
-#include "results/json_text.h"
 #include "results/tables.h"
 
 namespace chronodrome::results {
@@ -120,6 +120,23 @@ void write_flags(JsonText& json, const SessionResult& result) {
   json.close_list();
 }
 
+/// As the session lists them: which of them are in use, the flags of the responses say.
+void write_windows(JsonText& json, const std::vector<document::WindowChoice>& windows) {
+  json.open_list("windows");
+  for (const auto& window : windows) {
+    json.open_object().number("curve", window.curve);
+    json.number("concentration_mol_per_l", window.concentration.value());
+    if (window.measure.empty()) {
+      json.null("measure");
+    } else {
+      json.text("measure", window.measure);
+    }
+    json.number("start_s", window.start.value()).number("end_s", window.end.value());
+    json.text("when", window.when).text("who", window.who).text("why", window.why).close_object();
+  }
+  json.close_list();
+}
+
 void write_preparation(JsonText& json, const document::Preparation& preparation) {
   json.open_object("preparation").text("label", preparation.label).text("species", preparation.species);
   json.text("tissue", preparation.tissue).number("temperature_c", preparation.temperature_c).close_object();
@@ -142,10 +159,12 @@ std::string summary_json(const SessionResult& result, const std::string& program
       .count("responses", result.responses.rows.size())
       .count("curves", result.curves.size());
   json.count("rhythm_episodes", result.rhythm.episodes.size())
-      .count("corrections", result.session.review.size());
+      .count("corrections", result.session.review.size())
+      .count("windows", result.session.windows.size());
   json.count("warnings", result.warnings.size()).close_object();
   write_channels(json, result);
   write_pathways(json, result);
+  write_windows(json, result.session.windows);
   json.open_list("warnings");
   for (const auto& warning : result.warnings)
     json.item(describe(warning));

@@ -5,6 +5,7 @@
 
 #include "results/csv_text.h"
 #include "results/curves_json.h"
+#include "results/dictionary.h"
 
 namespace chronodrome::results {
 
@@ -143,6 +144,7 @@ std::vector<OutputFile> result_files(const SessionResult& result, const std::str
                   [](const auto& channel) { return recording::is_mechanical(channel.role); });
   if (mechanical) files.push_back({"mechanics.csv", mechanics_csv(result)});
   if (!result.conduction_facts.empty()) files.push_back({"conduction.csv", conduction_csv(result)});
+  files.push_back({"dictionary.csv", dictionary_csv(files)});
   files.push_back({"summary.json", summary_json(result, program_version)});
   return files;
 }

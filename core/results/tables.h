@@ -22,8 +22,8 @@ std::string conduction_csv(const session::SessionResult& result);
 /// `summary.json`. `program_version` as the build states it.
 std::string summary_json(const session::SessionResult& result, const std::string& program_version);
 
-/// Every file of the results folder, in a fixed order; `mechanics.csv` and `conduction.csv` only where they
-/// apply.
+/// Every file of the results folder but workbook and reports, in a fixed order; `mechanics.csv` and
+/// `conduction.csv` only where they apply.
 std::vector<OutputFile> result_files(const session::SessionResult& result,
                                      const std::string& program_version);
 

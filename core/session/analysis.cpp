@@ -2,8 +2,8 @@
 #include "session/analysis.h"
 
 #include <algorithm>
+#include <array>
 
-#include "activation/compute.h"
 #include "activation/corrections.h"
 #include "base/parallel.h"
 #include "conduction/pairing.h"
@@ -11,8 +11,10 @@
 #include "session/channels.h"
 #include "session/conduction_facts.h"
 #include "session/curves.h"
+#include "session/detection.h"
 #include "session/exclusions.h"
-#include "session/flow_series.h"
+#include "session/progress.h"
+#include "session/response_inputs.h"
 
 namespace chronodrome::session {
 namespace {
@@ -24,23 +26,37 @@ using recording::Role;
 /// Runs the stages one after the other and keeps what each gave.
 class Analysis {
 public:
-  Analysis(const SessionInputs& inputs, unsigned threads) : in_(inputs), threads_(threads) {}
+  Analysis(const SessionInputs& inputs, unsigned threads, Detection& detection, const Watch& watch)
+      : in_(inputs), threads_(threads), detection_(detection), progress_(watch) {}
 
   Result<SessionResult> run() {
     take_inputs();
-    for (const auto step : {&Analysis::plan_steps, &Analysis::find_activations, &Analysis::pair_electrodes,
-                            &Analysis::read_rhythm, &Analysis::read_responses}) {
-      if (auto error = (this->*step)()) {
-        if (error->file.empty()) error->file = in_.session.path;
-        return *error;
-      }
+    for (const Stage& stage : kStages) {
+      auto error = run_stage(stage);
+      if (!error) continue;
+      if (error->file.empty()) error->file = in_.session.path;
+      return *error;
     }
-    out_.curves = fit_curves(out_.responses, in_.session.preparation.label, in_.settings.model,
-                             in_.settings.fit, threads_);
+    progress_.tell(1.0, "done");
     return std::move(out_);
   }
 
 private:
+  struct Stage {
+    double share; ///< of the work that is done when it begins
+    const char* doing;
+    std::optional<Error> (Analysis::*run)();
+  };
+  static const std::array<Stage, 6> kStages;
+
+  std::optional<Error> run_stage(const Stage& stage) {
+    progress_.tell(stage.share, stage.doing);
+    if (progress_.is_stopped()) return conditioning::stopped();
+    if (auto error = (this->*stage.run)()) return error;
+    if (progress_.is_stopped()) return conditioning::stopped();
+    return std::nullopt;
+  }
+
   void take_inputs() {
     out_.session = in_.session;
     out_.session_sha256 = in_.session_sha256;
@@ -63,18 +79,19 @@ private:
     if (!channels) return channels.error();
     warn(channels->warnings);
     out_.channels = channels->channels;
-    auto found = activation::compute_all(out_.channels, in_.settings.activation, threads_);
-    exclusions_ = exclusions_of(in_.session.review);
-    for (std::size_t i = 0; i < found.size(); ++i) {
-      if (!found[i]) return found[i].error();
+    if (auto error =
+            bring_up_to_date(detection_, out_.channels, in_.settings.activation, threads_, progress_))
+      return error;
+    const auto excluded = all_exclusions();
+    for (std::size_t i = 0; i < out_.channels.size(); ++i) {
       const Channel& channel = out_.channels[i];
-      ChannelActivations& marks = *found[i];
+      ChannelActivations marks = detection_.found[i]; // kept as it is for the next run
       const std::size_t before = marks.marks.size();
       activation::apply_corrections(marks, in_.session.review, channel, in_.settings.activation);
       warn(marks.warnings);
       out_.corrections.push_back(counts_of(marks, before));
-      out_.intervals.push_back(rhythm::intervals_of(marks, excluded_spans(all_exclusions(), channel.label),
-                                                    in_.settings.intervals));
+      out_.intervals.push_back(
+          rhythm::intervals_of(marks, excluded_spans(excluded, channel.label), in_.settings.intervals));
       out_.activations.push_back(std::move(marks));
     }
     return std::nullopt;
@@ -93,8 +110,8 @@ private:
 
   /// The user's exclusions and those of the drug log.
   [[nodiscard]] std::vector<response::Exclusion> all_exclusions() const {
-    std::vector<response::Exclusion> all = exclusions_;
-    for (const auto& stretch : plan_.excluded)
+    std::vector<response::Exclusion> all = exclusions_of(in_.session.review);
+    for (const auto& stretch : out_.plan.excluded)
       all.push_back({"", {stretch.start, stretch.end}});
     return all;
   }
@@ -181,42 +198,50 @@ private:
     bath.arrival_delay = in_.session.preparation.arrival_delay;
     auto plan = protocol::plan_curves(in_.protocol, bath, in_.recording->duration);
     if (!plan) return plan.error();
-    plan_ = std::move(plan).value();
-    warn(plan_.warnings);
+    out_.plan = std::move(plan).value();
+    warn(out_.plan.warnings);
     return std::nullopt;
   }
 
   std::optional<Error> read_responses() {
-    response::Inputs inputs;
-    inputs.plan = &plan_;
-    for (std::size_t i = 0; i < out_.channels.size(); ++i) {
-      inputs.channels.push_back({&out_.activations[i], out_.channels[i].role, out_.channels[i].unit});
-      if (out_.channels[i].role == Role::flow) inputs.flows.push_back(second_means(out_.channels[i]));
-    }
-    for (std::size_t i = 0; i < out_.pathways.size(); ++i) {
-      const auto& mm = in_.session.pathways[i].distance_mm;
-      inputs.pathways.push_back({&out_.pathways[i], mm ? std::optional(millimetres(*mm)) : std::nullopt});
-    }
-    inputs.excluded = exclusions_;
-    inputs.measures = in_.session.measures;
-    auto responses = response::compute(inputs, in_.settings.response);
+    auto responses = response::compute(response_inputs(out_, in_.session.measures), in_.settings.response);
     if (!responses) return responses.error();
     out_.responses = std::move(responses).value();
     warn(out_.responses.warnings);
     return std::nullopt;
   }
 
+  std::optional<Error> fit() {
+    out_.curves = fit_curves(out_.responses, in_.session.preparation.label, in_.settings.model,
+                             in_.settings.fit, threads_);
+    return std::nullopt;
+  }
+
   const SessionInputs& in_;
   unsigned threads_;
+  Detection& detection_;
+  Progress progress_;
   SessionResult out_;
-  protocol::CurvePlan plan_;
-  std::vector<response::Exclusion> exclusions_;
 };
+
+const std::array<Analysis::Stage, 6> Analysis::kStages = {
+    {{0.0, "reading the drug log", &Analysis::plan_steps},
+     {0.0, "finding activations", &Analysis::find_activations},
+     {stages::kPairing, "pairing electrodes", &Analysis::pair_electrodes},
+     {stages::kRhythm, "reading the rhythm", &Analysis::read_rhythm},
+     {stages::kResponses, "reading responses", &Analysis::read_responses},
+     {stages::kFits, "fitting curves", &Analysis::fit}}};
 
 } // namespace
 
 Result<SessionResult> analyse(const SessionInputs& inputs, unsigned threads) {
-  return Analysis(inputs, threads).run();
+  Detection detection;
+  return analyse(inputs, threads, detection, Watch());
+}
+
+Result<SessionResult> analyse(const SessionInputs& inputs, unsigned threads, Detection& detection,
+                              const Watch& watch) {
+  return Analysis(inputs, threads, detection, watch).run();
 }
 
 } // namespace chronodrome::session

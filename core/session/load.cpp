@@ -58,29 +58,33 @@ void append(std::vector<Warning>& all, const std::vector<Warning>& more) {
 } // namespace
 
 Result<SessionInputs> load_session(const std::string& path, const LoadOptions& options) {
-  SessionInputs inputs;
   auto session = intake::read_session(path);
   if (!session) return session.error();
-  inputs.session = std::move(session).value();
-  inputs.session_sha256 = sha256_of(inputs.session.as_read);
-  append(inputs.warnings, inputs.session.warnings);
-
-  auto settings = settings_of(inputs.session);
-  if (!settings) return settings.error();
-  inputs.settings = settings->settings;
-  inputs.settings_changed = settings->changed;
-  append(inputs.warnings, settings->warnings);
-
-  auto recording = read_files(inputs.session, options);
+  // Settings are looked at before a long recording is read in vain.
+  if (const auto settings = settings_of(*session); !settings) return settings.error();
+  auto recording = read_files(*session, options);
   if (!recording) return recording.error();
-  if (auto error = check_digests(inputs.session, *recording)) return *error;
-  append(inputs.warnings, recording->warnings);
-
-  auto log = read_log(inputs.session, *recording);
+  if (auto error = check_digests(*session, *recording)) return *error;
+  auto log = read_log(*session, *recording);
   if (!log) return log.error();
-  inputs.protocol = std::move(log).value();
-  append(inputs.warnings, inputs.protocol.warnings);
-  inputs.recording = std::make_shared<const recording::Recording>(std::move(recording).value());
+  return inputs_of(*session, *log, std::make_shared<const recording::Recording>(std::move(*recording)));
+}
+
+Result<SessionInputs> inputs_of(const document::SessionFile& session, const protocol::Protocol& protocol,
+                                const std::shared_ptr<const recording::Recording>& recording) {
+  auto chosen = settings_of(session);
+  if (!chosen) return chosen.error();
+  SessionInputs inputs;
+  inputs.session = session;
+  inputs.session_sha256 = sha256_of(session.as_read);
+  inputs.recording = recording;
+  inputs.protocol = protocol;
+  inputs.settings = chosen->settings;
+  inputs.settings_changed = chosen->changed;
+  append(inputs.warnings, session.warnings);
+  append(inputs.warnings, chosen->warnings);
+  append(inputs.warnings, recording->warnings);
+  append(inputs.warnings, protocol.warnings);
   return inputs;
 }
 

@@ -3,9 +3,9 @@
 #include <filesystem>
 #include <system_error>
 
+#include "base/json_text.h"
 #include "base/number_text.h"
 #include "intake/written_file.h"
-#include "simulation/json_text.h"
 #include "simulation/simulate.h"
 
 namespace chronodrome::simulation {
@@ -31,18 +31,18 @@ Done write_text(const std::filesystem::path& path, const std::string& text) {
 }
 
 void add_preparation(JsonText& json, const PreparationPlan& plan) {
-  json.open('{', "preparation");
+  json.open_object("preparation");
   json.text("label", plan.label).text("species", plan.species).text("tissue", plan.tissue);
   json.number("temperature_c", plan.temperature_c).number("bath_volume_ml", plan.bath_volume_ml);
   json.text("animal", plan.animal).text("sex", plan.sex).number("mass_g", plan.mass_g);
   json.text("date", plan.date).text("operator", "").text("group", plan.group);
   json.number("arrival_delay_s", plan.arrival_delay.value()).text("notes", plan.notes);
-  json.close();
+  json.close_object();
 }
 
 /// How the session says a CSV file is to be read: nothing is left to be found out.
 void add_csv(JsonText& json, const Scenario& scenario) {
-  json.open('{', "csv");
+  json.open_object("csv");
   if (scenario.file.kind == FileKind::csv) {
     const intake::CsvLayout& layout = scenario.file.csv;
     json.number("rate_hz", scenario.channels.front().rate.value());
@@ -51,7 +51,7 @@ void add_csv(JsonText& json, const Scenario& scenario) {
   } else {
     json.null("rate_hz").null("delimiter").null("decimal").null("time_column");
   }
-  json.close();
+  json.close_object();
 }
 
 void add_channel(JsonText& json, const ChannelPlan& channel, const Scenario& scenario) {
@@ -59,91 +59,93 @@ void add_channel(JsonText& json, const ChannelPlan& channel, const Scenario& sce
   // A table's header states the unit in brackets, and a source is the header text as it stands.
   if (scenario.file.kind == FileKind::csv && !scenario.file.csv.units_row && !channel.unit.empty())
     source += " (" + channel.unit + ")";
-  json.open('{').text("source", source).text("label", channel.label);
+  json.open_object().text("source", source).text("label", channel.label);
   json.text("role", recording::name_of(channel.role));
   if (channel.lead != recording::Lead::none) json.text("lead", recording::name_of(channel.lead));
   json.text("unit", channel.unit).truth("invert", false);
   if (channel.position_mm) {
-    json.open('[', "position_mm").element((*channel.position_mm)[0]).element((*channel.position_mm)[1]);
-    json.close();
+    json.open_list("position_mm").item((*channel.position_mm)[0]).item((*channel.position_mm)[1]);
+    json.close_list();
   }
-  json.close();
+  json.close_object();
 }
 
 void add_activations(JsonText& json, const Truth& truth) {
-  json.open('{', "activations");
+  json.open_object("activations");
   for (const TrueActivations& channel : truth.activations) {
-    json.open('[', channel.channel);
+    json.open_list(channel.channel);
     for (const Seconds time : channel.times)
-      json.element(nanosecond_value(time));
-    json.close();
+      json.item(nanosecond_value(time));
+    json.close_list();
   }
-  json.close();
+  json.close_object();
 }
 
 void add_pathways(JsonText& json, const Truth& truth) {
-  json.open('[', "pathways");
+  json.open_list("pathways");
   for (const TruePathway& pathway : truth.pathways) {
-    json.open('{').text("label", pathway.label).text("from", pathway.from).text("to", pathway.to);
-    json.open('[', "rows");
+    json.open_object().text("label", pathway.label).text("from", pathway.from).text("to", pathway.to);
+    json.open_list("rows");
     for (const TrueDelay& row : pathway.rows) {
-      json.open('[').number({}, nanosecond_value(row.from)).number({}, nanosecond_value(row.to));
-      json.element(name_of(row.kind)).close();
+      json.open_list().number({}, nanosecond_value(row.from)).number({}, nanosecond_value(row.to));
+      json.item(name_of(row.kind)).close_list();
     }
-    json.close().close();
+    json.close_list().close_object();
   }
-  json.close();
+  json.close_list();
 }
 
 void add_responses(JsonText& json, const Truth& truth) {
-  json.open('[', "responses");
+  json.open_list("responses");
   for (const TrueResponse& row : truth.responses) {
-    json.open('{').number("curve", row.curve).text("agent", row.agent).text("background", row.background);
+    json.open_object().number("curve", row.curve).text("agent", row.agent).text("background", row.background);
     json.number("concentration_mol_per_l", row.concentration).text("measure", row.measure);
     json.text("unit", row.unit).number("value", row.value).text("status", row.status);
-    json.number("step_start_s", row.step_start.value()).number("step_end_s", row.step_end.value()).close();
+    json.number("step_start_s", row.step_start.value())
+        .number("step_end_s", row.step_end.value())
+        .close_object();
   }
-  json.close();
-  json.open('[', "curves");
+  json.close_list();
+  json.open_list("curves");
   for (const TrueCurve& curve : truth.curves) {
-    json.open('{')
+    json.open_object()
         .number("curve", curve.curve)
         .text("agent", curve.agent)
         .text("background", curve.background);
     json.text("measure", curve.measure).text("unit", curve.unit).number("basal", curve.basal);
     json.number("emax", curve.emax).number("pec50", curve.pec50).number("nh", curve.nh);
-    json.truth("holds", curve.holds).close();
+    json.truth("holds", curve.holds).close_object();
   }
-  json.close();
+  json.close_list();
 }
 
 } // namespace
 
 std::string session_text(const Scenario& scenario) {
-  JsonText json(2);
-  json.open('{').text("format", "chronodrome-session").number("version", 1);
+  JsonText json(JsonDigits::exact, 2);
+  json.open_object().text("format", "chronodrome-session").number("version", 1);
   add_preparation(json, scenario.preparation);
-  json.open('{', "recording").open('[', "files").open('{').text("path", recording_name(scenario));
-  json.close().close();
+  json.open_object("recording").open_list("files").open_object().text("path", recording_name(scenario));
+  json.close_object().close_list();
   add_csv(json, scenario);
-  json.close();
-  json.open('[', "channels");
+  json.close_object();
+  json.open_list("channels");
   for (const ChannelPlan& channel : scenario.channels)
     add_channel(json, channel, scenario);
-  json.close().open('[', "pathways");
+  json.close_list().open_list("pathways");
   for (const PathwayPlan& pathway : scenario.pathways) {
-    json.open('{').text("label", pathway.label).text("from", pathway.from).text("to", pathway.to);
-    json.number("distance_mm", pathway.distance_mm).close();
+    json.open_object().text("label", pathway.label).text("from", pathway.from).text("to", pathway.to);
+    json.number("distance_mm", pathway.distance_mm).close_object();
   }
-  json.close().open('{', "protocol");
+  json.close_list().open_object("protocol");
   if (scenario.file.protocol_in_annotations)
     json.null("file");
   else
     json.text("file", "protocol.csv");
-  json.close().open('[', "measures");
+  json.close_object().open_list("measures");
   for (const std::string& measure : measures_of(scenario))
-    json.element(measure);
-  json.close().open('{', "analysis").close().open('[', "review").close().close();
+    json.item(measure);
+  json.close_list().open_object("analysis").close_object().open_list("review").close_list().close_object();
   return json.take();
 }
 
@@ -168,24 +170,24 @@ std::string protocol_text(const Scenario& scenario) {
 
 std::string truth_text(const Simulated& simulated) {
   const Scenario& scenario = simulated.scenario;
-  JsonText json(2);
-  json.open('{').text("format", "chronodrome-truth").number("version", 1);
+  JsonText json(JsonDigits::exact, 2);
+  json.open_object().text("format", "chronodrome-truth").number("version", 1);
   json.text("scenario", scenario.name).text("seed", std::to_string(scenario.seed));
   json.number("duration_s", scenario.duration.value());
   add_activations(json, simulated.truth);
   add_pathways(json, simulated.truth);
-  json.open('[', "stimuli_s");
+  json.open_list("stimuli_s");
   for (const Seconds time : simulated.truth.stimuli)
-    json.element(nanosecond_value(time));
-  json.close().open('[', "rhythm");
+    json.item(nanosecond_value(time));
+  json.close_list().open_list("rhythm");
   for (const TrueEpisode& episode : simulated.truth.rhythm) {
-    json.open('{').number("start_s", nanosecond_value(episode.start));
+    json.open_object().number("start_s", nanosecond_value(episode.start));
     json.number("end_s", nanosecond_value(episode.end)).text("kind", episode.kind);
-    json.text("detail", episode.detail).close();
+    json.text("detail", episode.detail).close_object();
   }
-  json.close();
+  json.close_list();
   add_responses(json, simulated.truth);
-  json.close();
+  json.close_object();
   return json.take();
 }
 

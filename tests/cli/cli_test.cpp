@@ -226,3 +226,81 @@ TEST_CASE("output that cannot be written is no success", "[cli]") {
       program + " inspect " + kSamples + "rabbit-heart/recording.edf >/dev/full 2>/dev/null";
   CHECK(WEXITSTATUS(std::system(command.c_str())) == 3);
 }
+
+TEST_CASE("a session leads to report, workbook and dictionary, and --no-report leaves out the reports",
+          "[cli]") {
+  const Fresh fresh;
+  const fs::path out = kFolder / "out";
+  REQUIRE(run("analyse " + session_of("guinea-pig-heart") + " --out " + out.string()).status == 0);
+  const fs::path made = out / "guinea-pig-heart";
+  CHECK(content_of(made / "report.pdf").rfind("%PDF-", 0) == 0);
+  CHECK(content_of(made / "report.html").rfind("<!DOCTYPE html>", 0) == 0);
+  CHECK(content_of(made / "workbook.xlsx").rfind("PK", 0) == 0);
+  CHECK(first_line(made / "dictionary.csv") == "file,column,meaning,unit,values");
+  const std::string workbook = content_of(made / "workbook.xlsx");
+  // Into the same folder: the reports of the run before would tell of another run, so they go.
+  REQUIRE(run("analyse " + session_of("guinea-pig-heart") + " --no-report --out " + out.string()).status ==
+          0);
+  CHECK_FALSE(fs::exists(made / "report.pdf"));
+  CHECK_FALSE(fs::exists(made / "report.html"));
+  CHECK(content_of(made / "workbook.xlsx") == workbook);
+  CHECK(fs::exists(made / "dictionary.csv"));
+}
+
+TEST_CASE("a report needs no display and says nothing of its own on standard error", "[cli]") {
+  const Fresh fresh;
+  const fs::path out = kFolder / "out";
+  const std::string bare = "env -u DISPLAY -u WAYLAND_DISPLAY -u XDG_RUNTIME_DIR -u QT_QPA_PLATFORM LC_ALL=C "
+                           "QT_SCALE_FACTOR=2 ";
+  const std::string words = " analyse " + session_of("rabbit-heart") + " --out " + out.string();
+  const std::string program = std::string(CHRONODROME_BUILD_DIR) + "/bin/chronodrome-cli";
+  fs::create_directories(kFolder);
+  const std::string err = (kFolder / "err.txt").string();
+  CHECK(WEXITSTATUS(std::system((bare + program + words + " >/dev/null 2>" + err).c_str())) == 0);
+  CHECK(content_of(err).empty()); // this session has no warnings
+  const std::string pdf = content_of(out / "rabbit-heart" / "report.pdf");
+  CHECK(pdf.size() > 50000);
+  REQUIRE(run("analyse " + session_of("rabbit-heart") + " --out " + out.string()).status == 0);
+  CHECK(content_of(out / "rabbit-heart" / "report.pdf") == pdf); // whatever the desk is set to
+}
+
+TEST_CASE("without a font the tables are there and the missing report is said", "[cli]") {
+  const Fresh fresh;
+  const fs::path out = kFolder / "out";
+  fs::create_directories(kFolder / "no-fonts");
+  std::ofstream(kFolder / "fonts.conf")
+      << "<?xml version=\"1.0\"?><fontconfig><dir>" << (kFolder / "no-fonts").string() << "</dir><cachedir>"
+      << (kFolder / "no-fonts").string() << "</cachedir></fontconfig>";
+  const std::string program = std::string(CHRONODROME_BUILD_DIR) + "/bin/chronodrome-cli";
+  const std::string err = (kFolder / "err.txt").string();
+  const std::string command = "env FONTCONFIG_FILE=" + (kFolder / "fonts.conf").string() + " " + program +
+                              " analyse " + session_of("atrial-strip") + " --out " + out.string() +
+                              " >/dev/null 2>" + err;
+  CHECK(WEXITSTATUS(std::system(command.c_str())) == 0);
+  const std::string said = content_of(err);
+  check_messages(said);
+  CHECK(said.find("report.pdf:1: warning: no font is installed") != std::string::npos);
+  CHECK_FALSE(fs::exists(out / "atrial-strip" / "report.pdf"));
+  CHECK(fs::exists(out / "atrial-strip" / "workbook.xlsx"));
+  const auto summary = nlohmann::json::parse(content_of(out / "atrial-strip" / "summary.json"));
+  CHECK(summary["warnings"].dump().find("no font is installed") != std::string::npos);
+}
+
+TEST_CASE("results that cannot be written are an error, and no half file stays", "[cli]") {
+  const Fresh fresh;
+  const fs::path out = kFolder / "out";
+  REQUIRE(run("analyse " + session_of("atrial-strip") + " --out " + out.string()).status == 0);
+  std::map<std::string, std::string> before;
+  for (const auto& entry : fs::directory_iterator(out / "atrial-strip"))
+    before[entry.path().filename().string()] = content_of(entry.path());
+  // No file above 50 kB, as on a full disk.
+  const std::string program = std::string(CHRONODROME_BUILD_DIR) + "/bin/chronodrome-cli";
+  const std::string err = (kFolder / "err.txt").string();
+  const std::string command = "sh -c 'trap \"\" XFSZ; ulimit -f 100; exec " + program + " analyse " +
+                              session_of("atrial-strip") + " --out " + out.string() + "' >/dev/null 2>" + err;
+  CHECK(WEXITSTATUS(std::system(command.c_str())) == 3);
+  check_messages(content_of(err));
+  CHECK(content_of(err).find("error: ") != std::string::npos);
+  for (const auto& entry : fs::directory_iterator(out / "atrial-strip"))
+    CHECK(before[entry.path().filename().string()] == content_of(entry.path()));
+}

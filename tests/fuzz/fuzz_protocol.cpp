@@ -12,5 +12,7 @@ extern "C" int LLVMFuzzerTestOneInput(const std::uint8_t* data, std::size_t size
   const std::string text(reinterpret_cast<const char*>(data), size);
   const auto read = intake::parse_protocol(text, "protocol.csv");
   if (!read.ok() && read.error().what.empty()) std::abort();
+  const auto pasted = intake::protocol_from_text(text, "pasted text");
+  if (!pasted.ok() && pasted.error().what.empty()) std::abort();
   return 0;
 }

@@ -101,6 +101,45 @@ TEST_CASE("core knows nothing of Qt, of ui and of app", "[layering]") {
   }
 }
 
+TEST_CASE("a room of ui includes itself and rooms left of it; the panes do not see each other",
+          "[layering]") {
+  const std::set<std::string> panes = {"story", "evidence", "answer"};
+  std::map<std::string, std::set<std::string>> may;
+  may["look"] = {};
+  may["document"] = {"look"};
+  for (const auto& pane : panes)
+    may[pane] = {"look", "document"};
+  may["steps"] = {"look", "document"};
+  may["report"] = {"look", "document", "story", "evidence", "answer"};
+  may["window"] = {"look", "document", "story", "evidence", "answer", "steps", "report"};
+  const auto includes = includes_below("ui");
+  REQUIRE(includes.size() > 100);
+  for (const auto& include : includes) {
+    if (!include.quoted || include.target.rfind("ui/", 0) != 0) continue;
+    const std::string room = first_folder(include.file.substr(std::string("ui/").size()));
+    const std::string target = first_folder(include.target.substr(std::string("ui/").size()));
+    INFO(include.file << ": " << include.line);
+    REQUIRE(may.count(room) == 1);
+    CHECK((target == room || may.at(room).count(target) == 1));
+  }
+}
+
+TEST_CASE("only ui/look names a colour", "[layering]") {
+  static const std::regex colour(
+      R"(QColor\s*\(|Qt::(red|green|blue|black|white|gray|darkGray|yellow|cyan|magenta)\b|#[0-9A-Fa-f]{6}\b)");
+  for (const auto& entry : fs::recursive_directory_iterator(fs::path(CHRONODROME_SOURCE_DIR) / "ui")) {
+    if (entry.path().extension() != ".h" && entry.path().extension() != ".cpp") continue;
+    if (entry.path().parent_path().filename() == "look") continue;
+    std::ifstream file(entry.path());
+    int number = 0;
+    for (std::string line; std::getline(file, line);) {
+      ++number;
+      INFO(entry.path().string() << ":" << number << ": " << line);
+      CHECK_FALSE(std::regex_search(line, colour));
+    }
+  }
+}
+
 TEST_CASE("nobody uses app", "[layering]") {
   for (const std::string folder : {"core", "ui"}) {
     for (const auto& include : includes_below(folder)) {

@@ -34,8 +34,11 @@ public:
   [[nodiscard]] bool isOpen() const;     ///< a session with its recording is there
   [[nodiscard]] bool isModified() const; ///< edits that are not saved
   [[nodiscard]] bool isReadOnly() const; ///< of a newer program, or its folder cannot be written
-  [[nodiscard]] QString path() const;    ///< of the session file; empty: never saved
-  [[nodiscard]] QString title() const;   ///< preparation's label, else the file's name, else "new session"
+  /// Why, and what to do, in one line; also where another program has the session open. Empty: it may be
+  /// edited.
+  [[nodiscard]] QString readOnlyReason() const;
+  [[nodiscard]] QString path() const;  ///< of the session file; empty: never saved
+  [[nodiscard]] QString title() const; ///< preparation's label, else the file's name, else "new session"
   [[nodiscard]] const document::SessionFile& session() const;                  ///< with all edits
   [[nodiscard]] const protocol::Protocol& protocol() const;                    ///< with all edits
   [[nodiscard]] std::shared_ptr<const recording::Recording> recording() const; ///< null: none
@@ -49,7 +52,10 @@ public:
   [[nodiscard]] double workShare() const; ///< 0 to 1
   [[nodiscard]] QString workText() const; ///< what is being done
 
-  // ---- edits: each is one named step of undoStack()
+  /// Why unsaved edits cannot be kept for the case of a crash; nothing: they are, or there are none.
+  [[nodiscard]] std::optional<Error> autosaveFault() const;
+
+  // ---- edits: each is one named step of undoStack(). What cannot be done makes no step: refused() says why.
   [[nodiscard]] QUndoStack* undoStack();
   void addMark(const std::string& channel, Seconds time, const QString& why = {});
   /// `time` is that of the mark, as the result gives it.
@@ -64,7 +70,8 @@ public:
   void releaseWindow(int curve, Molar concentration, const std::string& measure);
   /// The drug log as a whole (form of additions).
   void setProtocol(const protocol::Protocol& protocol, const QString& stepName);
-  /// Channels, pathways, measures, preparation, settings: everything else that a session says.
+  /// Channels, pathways, measures, preparation, settings: everything else that a session says. Its path, the
+  /// files of the recording with the choices for reading them, and the name of the drug log stay as they are.
   void setSession(const document::SessionFile& session, const QString& stepName);
 
   /// For dragging: responses and fits with this window, without an edit; quick. Null: no result yet.
@@ -81,8 +88,12 @@ public Q_SLOTS:
   void adopt(const chronodrome::document::SessionFile& session,
              const chronodrome::protocol::Protocol& protocol,
              std::shared_ptr<const chronodrome::recording::Recording> recording);
+  /// Takes up a journal of unsaved edits (see Recovery): as open(), with one more step, `recover unsaved
+  /// edits`.
+  void recover(const QString& journal);
   void close();
-  /// Writes the session (and the drug log, if it was edited). Errors are shown by the caller.
+  /// Writes the session (and the drug log, if it was edited). Errors are shown by the caller. save() refuses
+  /// where the file is not as it was read any more; saveAs() under the same name replaces it.
   chronodrome::Done save();
   chronodrome::Done saveAs(const QString& path);
   /// Stops what runs in the background; the last result stays.
@@ -99,6 +110,8 @@ Q_SIGNALS:
   void workChanged(); ///< kind, share or text of the work
   void modifiedChanged(bool modified);
   void pathChanged();
+  void refused(const QString& message);        ///< why an edit was not made
+  void autosaveFailed(const QString& message); ///< once, when unsaved edits can no longer be kept
 
 private:
   class Private;

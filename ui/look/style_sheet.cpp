@@ -32,6 +32,7 @@ QLineEdit, QPlainTextEdit, QTextEdit, QComboBox, QSpinBox, QDoubleSpinBox {
   selection-background-color: $accent; selection-color: $on_accent; }
 QLineEdit:focus, QPlainTextEdit:focus, QTextEdit:focus, QComboBox:focus, QSpinBox:focus, QDoubleSpinBox:focus {
   border: 1px solid $accent; }
+QComboBox::drop-down { border: none; width: 20px; }
 QComboBox QAbstractItemView { background: $surface; color: $text; border: 1px solid $line;
   selection-background-color: $accent_fill; selection-color: $text; }
 QTableView, QTreeView, QListView { background: $surface; color: $text; border: 1px solid $line; gridline-color: $grid;
@@ -51,6 +52,8 @@ QSplitter::handle:hover { background: $accent_fill; }
 QLabel[quiet="true"] { color: $text_quiet; }
 QLabel[size="small"] { font-size: 11px; }
 QLabel[size="large"] { font-size: 17px; }
+QLabel[textSize="small"] { font-size: 11px; }
+QLabel[textSize="large"] { font-size: 17px; }
 QLabel[tone="caution"] { color: $caution; }
 QLabel[tone="fault"] { color: $fault; }
 )");
