@@ -8,6 +8,7 @@
 #include <unistd.h>
 
 #include "intake/csv_text.h"
+#include "results/quiet_errors.h"
 
 namespace chronodrome::results {
 namespace {
@@ -117,7 +118,10 @@ void BookWriter::open_sheet(const std::string& name, std::vector<SheetColumn> co
 void BookWriter::begin_part() {
   ++part_;
   const std::string name = part_ == 1 ? name_ : name_ + " (" + std::to_string(part_) + ")";
-  sheet_ = book_ == nullptr ? nullptr : workbook_add_worksheet(book_, name.c_str());
+  {
+    const QuietErrors quiet;
+    sheet_ = book_ == nullptr ? nullptr : workbook_add_worksheet(book_, name.c_str());
+  }
   widths_.assign(columns_.size(), 0);
   next_ = 1;
   if (sheet_ == nullptr) {
@@ -149,6 +153,7 @@ void BookWriter::row(const std::vector<SheetCell>& cells) {
     begin_part();
   }
   if (sheet_ == nullptr) return;
+  errno = 0;
   for (std::size_t i = 0; i < cells.size() && i < columns_.size(); ++i) {
     const auto column = static_cast<lxw_col_t>(i);
     if (const auto* number = std::get_if<double>(&cells[i])) {
@@ -160,6 +165,12 @@ void BookWriter::row(const std::vector<SheetCell>& cells) {
     }
   }
   ++next_;
+  note_fault();
+}
+
+/// The library does not look at what its temporary files answer; a full disk would cut a sheet silently.
+void BookWriter::note_fault() {
+  if (errno == ENOSPC || errno == EDQUOT || errno == EFBIG || errno == EIO) failed_ = true;
 }
 
 void BookWriter::write_text(lxw_col_t column, const std::string& text) {
@@ -180,8 +191,15 @@ Result<std::string> BookWriter::take() {
                  "free some room for temporary files"};
   };
   if (book_ == nullptr || failed_) return fault("the system gives no temporary file");
-  const lxw_error closed = workbook_close(book_);
+  lxw_error closed = LXW_NO_ERROR;
+  {
+    const QuietErrors quiet;
+    errno = 0;
+    closed = workbook_close(book_);
+    note_fault();
+  }
   book_ = nullptr; // closing has freed it
+  if (failed_) return fault("the disk for temporary files is full");
   if (closed != LXW_NO_ERROR) return fault(lxw_strerror(closed));
   const off_t size = ::lseek(file_, 0, SEEK_END);
   if (size < 0) return fault(std::strerror(errno));

@@ -46,6 +46,7 @@ public:
 private:
   void begin_part();
   void end_part();
+  void note_fault();
   void write_text(lxw_col_t column, const std::string& text);
 
   PlainLocale locale_; // the library prints numbers by the thread's locale

@@ -71,7 +71,9 @@ Result<SessionResult> with_windows_of(const SessionInputs& inputs, const Session
                                       const std::string& measure);
 
 /// Reads the session again after an edit in the window: as load_session(), but with the session, drug log and
-/// recording that are given. Errors: those of settings_of().
+/// recording that are given, which are not compared with its digests. `session_sha256` is the digest of
+/// `session.as_read`: that of the file only once the edits are saved and read. Errors: those of
+/// settings_of().
 Result<SessionInputs> inputs_of(const document::SessionFile& session, const protocol::Protocol& protocol,
                                 const std::shared_ptr<const recording::Recording>& recording);
 

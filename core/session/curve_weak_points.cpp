@@ -108,6 +108,11 @@ void add_flags(std::vector<WeakPoint>& weak, const pharmacology::CurveFit& fit, 
     WeakPoint point;
     point.flag = fit.flags[i];
     point.what = i < fit.reasons.size() ? fit.reasons[i] : fit.flags[i];
+    // "4 distinct concentrations" beside "4 distinct concentrations for 4 parameters ..." is no news.
+    const bool said = std::any_of(weak.begin(), weak.end(), [&](const WeakPoint& one) {
+      return one.what.rfind(point.what + " ", 0) == 0;
+    });
+    if (said) continue;
     for (const pharmacology::FlagMeaning& meaning : pharmacology::flag_meanings()) {
       if (meaning.flag != point.flag) continue;
       point.meaning = meaning.meaning;

@@ -141,8 +141,7 @@ TEST_CASE("the heads of the sheet of fits are those of the dictionary", "[result
 TEST_CASE("a label is never a formula", "[results]") {
   const ScratchFolder folder("test-workbook");
   auto result = test_support::sample_session("atrial-strip");
-  const std::string evil =
-      GENERATE("=1+1", "+cmd|' /C calc'!A0", "-2+3", "@SUM(A1)", "\t=1", "{=1}", "a\x01b");
+  const std::string evil = GENERATE("=1+1", "+cmd|' /C calc'!A0", "-2+3", "@SUM(A1)", "\t=1", "{=1}");
   result.activations[0].channel = evil;
   result.session.preparation.label = evil;
   result.session.preparation.notes = evil;
@@ -157,6 +156,23 @@ TEST_CASE("a label is never a formula", "[results]") {
   CHECK_FALSE(found.has_formula);
   CHECK(found.tables.at("activations.csv").differences == 0);
   CHECK(found.tables.at("responses.csv").differences == 0);
+}
+
+TEST_CASE("a label with characters that XML cannot hold leaves the workbook whole", "[results]") {
+  const ScratchFolder folder("test-workbook");
+  auto result = test_support::sample_session("atrial-strip");
+  result.activations[0].channel = GENERATE("a\x01"
+                                           "b",
+                                           "\xff\xfe", "x\xef\xbf\xbf", "<&>\"'");
+  const auto files = results::result_files(result, "x");
+  const std::string workbook = workbook_of(result, files);
+  const auto harmless = results::result_files(test_support::sample_session("atrial-strip"), "x");
+  write_all(folder, harmless, workbook);
+  const auto found = compared(folder);
+  // Every cell is there; only the label differs.
+  const auto& count = found.tables.at("activations.csv");
+  CHECK(count.differences == result.activations[0].marks.size());
+  CHECK(count.numbers == 4 * count.rows);
 }
 
 TEST_CASE("a table that is too long for a sheet goes on in the next", "[results]") {

@@ -306,6 +306,9 @@ TEST_CASE("a declined fit has points and a reason, but no line and no number", "
   CHECK_FALSE(declined->places[0].concentration); // the whole curve
   CHECK(declined->places[0].start.value() == 70.0);
   CHECK(declined->places[0].end.value() == 300.0);
+  // few_points would only say a part of it again.
+  REQUIRE(view->chosen.fit.has_flag("few_points"));
+  CHECK_FALSE(weak(*view, "few_points"));
 }
 
 TEST_CASE("no response is drawn as its mean", "[session][curve]") {

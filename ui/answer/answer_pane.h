@@ -50,6 +50,7 @@ public Q_SLOTS:
 
 private:
   void makeChoosers();
+  void makeTable();
   void layOut();
   void makeActions();
   void connectParts();

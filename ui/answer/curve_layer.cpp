@@ -71,7 +71,7 @@ void CurveLayer::draw(QCPPainter* painter) {
   drawChosen(*painter);
   drawPoints(*painter, view_->chosen, Outline::circle, color_);
   if (view_->axis.break_at)
-    drawAxisBreak(*painter, {at(*view_->axis.break_at, 0.0).x(), inner().bottom() + 1.0},
+    drawAxisBreak(*painter, {at(*view_->axis.break_at, 0.0).x(), inner().bottom() - 0.5},
                   mParentPlot->xAxis->basePen().color(), theme_->surface);
   const QRect rect = mParentPlot->axisRect()->rect();
   const int height = legendHeight(legend_, theme_->font(look::TextSize::small), rect.width());
@@ -80,7 +80,7 @@ void CurveLayer::draw(QCPPainter* painter) {
   if (!framed_) return;
   painter->setBrush(Qt::NoBrush);
   painter->setPen(inkPen(theme_->accent, look::kThin));
-  painter->drawRect(QRectF(mParentPlot->viewport()).adjusted(0.5, 0.5, -0.5, -0.5));
+  painter->drawRect(QRectF(mParentPlot->viewport()).adjusted(0.5, 0.5, -0.5, -1.5));
 }
 
 void CurveLayer::drawBand(QPainter& painter) const {

@@ -50,7 +50,7 @@ void writePdf(QIODevice& device, const ExportedCurve& curve, const QSizeF& mm) {
 void writePng(QIODevice& device, const ExportedCurve& curve, const QSizeF& mm) {
   const double scale = kDotsAnInch / kPixelsAnInch;
   QImage image(inPixels(mm) * scale, QImage::Format_RGB32);
-  image.fill(Qt::white);
+  image.fill(look::Theme::of(look::Mode::paper).surface);
   const int dots_a_metre = static_cast<int>(kDotsAnInch / kInch * 1000.0 + 0.5);
   image.setDotsPerMeterX(dots_a_metre);
   image.setDotsPerMeterY(dots_a_metre);

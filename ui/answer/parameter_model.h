@@ -10,6 +10,8 @@
 
 namespace chronodrome::ui::answer {
 
+inline constexpr int kParameterRowHeight = 20; ///< device-independent pixels
+
 /// The parameters of the shown fit, a row each.
 class ParameterModel : public QAbstractTableModel {
   Q_OBJECT

@@ -154,6 +154,17 @@ QString curveText(const CurveSeries& series) {
   return others.isEmpty() ? agent : agent + QStringLiteral(" with ") + others.join(QStringLiteral(" + "));
 }
 
+QString curveText(const session::SessionResult& result, int curve) {
+  CurveSeries named;
+  for (const response::Response& row : result.responses.rows) {
+    if (row.curve == curve) named.agent = row.agent;
+  }
+  for (const protocol::Curve& planned : result.plan.curves) {
+    if (planned.number == curve) named.background = planned.background_agents;
+  }
+  return curveText(named);
+}
+
 QString answerText(const CurveView& view) {
   namespace flags = pharmacology::flags;
   const pharmacology::CurveFit& fit = view.chosen.fit;
@@ -179,6 +190,8 @@ QString answerText(const CurveView& view) {
 QString censoredText(const CurveView& view) {
   if (!view.chosen.censored) return {};
   const pharmacology::CurveFit& fit = *view.chosen.censored;
+  namespace flags = pharmacology::flags;
+  if (fit.has_flag(flags::kDeclined) && view.chosen.fit.has_flag(flags::kDeclined)) return {};
   const QString prefix = QStringLiteral("With the limits taken in: ");
   if (!fit.reason.empty() && !fit.find("pec50")->estimate) return prefix + text(fit.reason);
   return ofLocations(fit, prefix);

@@ -18,6 +18,7 @@ QString formText(session::ResponseForm form);
 
 /// `carbachol`, `carbachol with atropine 100 nM`.
 QString curveText(const session::CurveSeries& series);
+QString curveText(const session::SessionResult& result, int curve);
 
 /// The answer in one sentence: `pEC50 6.30 (6.26 to 6.34)`, `pEC50 at most 5.09: ...`, `No
 /// concentration-related response ...`. A number that the data leave open is told as its bound.

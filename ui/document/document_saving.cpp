@@ -5,12 +5,12 @@
 
 #include <QDateTime>
 #include <QFile>
-#include <QFileInfo>
 
 #include "base/digest.h"
 #include "intake/protocol_reader.h"
 #include "results/protocol_writer.h"
 #include "results/session_writer.h"
+#include "ui/document/places.h"
 #include "ui/document/saving.h"
 #include "ui/document/session_document.h"
 #include "ui/document/session_document_private.h"
@@ -68,7 +68,7 @@ Done SessionDocument::save() {
 }
 
 Done SessionDocument::saveAs(const QString& path) {
-  return d_->saveTo(path.isEmpty() ? path : QFileInfo(path).absoluteFilePath());
+  return d_->saveTo(absolutePath(path));
 }
 
 bool SessionDocument::Private::isLogEdited() const {

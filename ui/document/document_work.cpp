@@ -220,8 +220,15 @@ void SessionDocument::Private::startAnalysis() {
           detection = std::move(run->detection);
           if (!wanted) return;
           if (!run->outcome->ok()) return tellFailure(run->outcome->error());
-          result = std::make_shared<const SessionResult>(std::move(*run->outcome).value());
-          result_inputs = run->inputs;
+          auto fresh = std::move(*run->outcome).value();
+          result_inputs = currentInputs();
+          if (result_inputs != run->inputs) {
+            // It was saved meanwhile: the same session, in the file as it is now.
+            keepPlace(fresh.session, content.session);
+            fresh.session_sha256 = result_inputs->session_sha256;
+            fresh.protocol = *content.log;
+          }
+          result = std::make_shared<const SessionResult>(std::move(fresh));
           result_state = run->state;
           Q_EMIT q->resultChanged();
           tellChanges();

@@ -2,6 +2,7 @@
 #include "ui/document/places.h"
 
 #include <QDir>
+#include <QFileInfo>
 #include <QStandardPaths>
 
 namespace chronodrome::ui {
@@ -27,6 +28,10 @@ QString configFolder() {
 
 QString recoveryFolder() {
   return stateFolder() + QStringLiteral("/recovery");
+}
+
+QString absolutePath(const QString& path) {
+  return path.isEmpty() ? path : QDir::cleanPath(QFileInfo(path).absoluteFilePath());
 }
 
 } // namespace chronodrome::ui

@@ -15,4 +15,7 @@ QString configFolder();
 /// Where the journals of unsaved edits lie.
 QString recoveryFolder();
 
+/// One spelling of a path, from the root and without `..`; empty stays empty.
+QString absolutePath(const QString& path);
+
 } // namespace chronodrome::ui

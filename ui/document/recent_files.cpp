@@ -1,7 +1,6 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "ui/document/recent_files.h"
 
-#include <QDir>
 #include <QFileInfo>
 #include <QSettings>
 
@@ -31,7 +30,7 @@ std::vector<RecentFile> RecentFiles::files() const {
 
 void RecentFiles::add(const QString& path) {
   if (path.isEmpty()) return;
-  const QString absolute = QDir::cleanPath(QFileInfo(path).absoluteFilePath());
+  const QString absolute = absolutePath(path);
   // Another window may have opened files since.
   QStringList paths = QFileInfo::exists(file_) ? storedIn(file_) : paths_;
   paths.removeAll(absolute);
@@ -41,7 +40,7 @@ void RecentFiles::add(const QString& path) {
 
 void RecentFiles::remove(const QString& path) {
   QStringList paths = paths_;
-  if (paths.removeAll(QDir::cleanPath(QFileInfo(path).absoluteFilePath())) > 0) keep(paths);
+  if (paths.removeAll(absolutePath(path)) > 0) keep(paths);
 }
 
 void RecentFiles::clear() {

@@ -27,10 +27,6 @@ QString loginName() {
   return qEnvironmentVariable("USER", QStringLiteral("unknown"));
 }
 
-QString absolute(const QString& path) {
-  return path.isEmpty() ? path : QFileInfo(path).absoluteFilePath();
-}
-
 } // namespace
 
 SessionDocument::Private::Private(SessionDocument* document)
@@ -237,7 +233,7 @@ void SessionDocument::close() {
 }
 
 void SessionDocument::open(const QString& path) {
-  d_->want({absolute(path), {}});
+  d_->want({absolutePath(path), {}});
 }
 
 void SessionDocument::recover(const QString& journal) {

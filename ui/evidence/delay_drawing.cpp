@@ -3,6 +3,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <utility>
 
 #include "ui/look/number_text.h"
 #include "ui/look/plot_style.h"
@@ -13,6 +14,7 @@ namespace {
 constexpr double kRowsApart = 12.0; // pixels between rows of the pathway, below which lines are a blur
 constexpr double kBar = 9.0;        // width of the bar of a blocked beat
 constexpr double kNumberHeight = 13.0;
+constexpr double kAir = 3.0; // between a line and its number
 
 using conduction::DelayRow;
 using conduction::DelayState;
@@ -42,24 +44,43 @@ void drawBlocked(QCPPainter& painter, const DelayPlace& place, double x) {
   painter.restore();
 }
 
-void writeBeside(QCPPainter& painter, const DelayPlace& place, const QString& text, double x,
-                 const look::Theme& theme, TextRoom& room) {
-  if (place.strip_height < kNumberHeight) return;
-  const double width = QFontMetricsF(painter.font()).horizontalAdvance(text);
-  const QRectF box(x + 4.0, place.strip_top + (place.strip_height - kNumberHeight) / 2.0, width,
-                   kNumberHeight);
-  if (box.left() < place.time.left || box.right() > place.time.right()) return;
-  if (!room.take(box.left() - 2.0, box.right() + 4.0)) return;
-  painter.save();
-  painter.setPen(theme.text_quiet);
-  painter.drawText(box, Qt::AlignLeft | Qt::AlignVCenter, text);
-  painter.restore();
+/// Right of `right`, or else left of `left`: whichever side is free. `y`: top of the text.
+void writeBeside(QCPPainter& painter, const DelayPlace& place, const QString& text, double left, double right,
+                 double y, const look::Theme& theme, TextRoom& room) {
+  const double width = QFontMetricsF(painter.font()).horizontalAdvance(text) + 1.0;
+  for (const double x : {right + kAir, left - kAir - width}) {
+    if (x < place.time.left || x + width > place.time.right()) continue;
+    if (!room.take(x - 1.0, x + width + 1.0)) continue;
+    painter.save();
+    painter.setPen(theme.text_quiet);
+    painter.drawText(QRectF(x, y, width, kNumberHeight), Qt::AlignLeft | Qt::AlignVCenter, text);
+    painter.restore();
+    return;
+  }
+}
+
+/// Where a line stands within the strip: from its upper to its lower edge.
+std::pair<double, double> reachOf(const DelayPlace& place, const DelayRow& row) {
+  const double from = place.time.xOf(*row.from_time);
+  if (!row.delay || !row.to_time) return {from - kBar / 2, from + kBar / 2};
+  const auto at = [&](double y) {
+    const double share = std::clamp((y - place.from_edge) / (place.to_edge - place.from_edge), 0.0, 1.0);
+    return from + share * (place.time.xOf(*row.to_time) - from);
+  };
+  const double upper = at(place.strip_top);
+  const double lower = at(place.strip_top + place.strip_height);
+  return {std::min(upper, lower), std::max(upper, lower)};
+}
+
+bool isBlocked(const DelayRow& row) {
+  // What could not be seen is no block.
+  return row.state == DelayState::blocked && row.from_time && !row.answer_unseen;
 }
 
 } // namespace
 
 void drawDelays(QCPPainter& painter, const DelayPlace& place, const conduction::PathwayDelays& pathway,
-                const look::Theme& theme, TextRoom& room) {
+                const look::Theme& theme, StripRoom& room) {
   const auto [first, end] = rowsWithin(pathway.rows, place.time);
   if (end == first) return;
   const double apart = place.time.width / static_cast<double>(end - first);
@@ -69,26 +90,43 @@ void drawDelays(QCPPainter& painter, const DelayPlace& place, const conduction::
   painter.setFont(theme.font(look::TextSize::small));
   painter.setClipRect(QRectF(place.time.left, std::min(place.from_edge, place.to_edge), place.time.width,
                              std::abs(place.to_edge - place.from_edge)));
+  const bool has_two_lines = place.strip_height >= 2.0 * kNumberHeight + 2.0;
+  // Lines and bars first, so that no number stands on one.
   for (std::size_t i = first; i < end; ++i) {
     const DelayRow& row = pathway.rows[i];
-    // What could not be seen is no block.
     painter.setPen(look::thinPen(theme.text_quiet, row.ambiguous ? Qt::DashLine : Qt::SolidLine));
     if (row.delay && row.from_time && row.to_time) {
-      const QPointF from(place.time.xOf(*row.from_time), place.from_edge);
-      const QPointF to(place.time.xOf(*row.to_time), place.to_edge);
-      painter.drawLine(from, to);
-      // Beside the line where it leaves the strip.
-      const double share = std::clamp((place.strip_top + place.strip_height - place.from_edge) /
-                                          (place.to_edge - place.from_edge),
-                                      0.0, 1.0);
+      painter.drawLine(QPointF(place.time.xOf(*row.from_time), place.from_edge),
+                       QPointF(place.time.xOf(*row.to_time), place.to_edge));
+    } else if (isBlocked(row)) {
+      drawBlocked(painter, place, place.time.xOf(*row.from_time));
+    } else {
+      continue;
+    }
+    const auto [left, right] = reachOf(place, row);
+    // A bar ends above the lower line of text.
+    room.upper.occupy(left, right);
+    if (row.delay || !has_two_lines) room.lower.occupy(left, right);
+  }
+  if (place.strip_height < kNumberHeight) {
+    painter.restore();
+    return;
+  }
+  const double bottom = place.strip_top + place.strip_height;
+  const double lower = has_two_lines ? bottom - kNumberHeight - 1.0
+                                     : place.strip_top + (place.strip_height - kNumberHeight) / 2.0;
+  for (std::size_t i = first; i < end; ++i) {
+    const DelayRow& row = pathway.rows[i];
+    if (!row.from_time || (!isBlocked(row) && !(row.delay && row.to_time))) continue;
+    const auto [left, right] = reachOf(place, row);
+    if (row.delay) {
       QString text = look::plainText(in_milliseconds(*row.delay), 1.0);
       if (row.ambiguous) text += QStringLiteral(" ?");
-      writeBeside(painter, place, text, std::max(from.x(), from.x() + share * (to.x() - from.x())), theme,
-                  room);
-    } else if (row.state == DelayState::blocked && row.from_time && !row.answer_unseen) {
-      const double x = place.time.xOf(*row.from_time);
-      drawBlocked(painter, place, x);
-      writeBeside(painter, place, QStringLiteral("blocked"), x + kBar / 2, theme, room);
+      writeBeside(painter, place, text, left, right, lower, theme, room.lower);
+    } else {
+      writeBeside(painter, place, QStringLiteral("blocked"), left, right,
+                  has_two_lines ? place.strip_top + 3.0 : lower, theme,
+                  has_two_lines ? room.upper : room.lower);
     }
   }
   painter.restore();

@@ -19,6 +19,6 @@ struct DelayPlace {
 /// A line for each beat from mark to mark: its slope is the delay. Blocked beats end at a bar; retrograde
 /// ones run the other way. Numbers in ms where they find room in `room`. Nothing where beats are too near.
 void drawDelays(QCPPainter& painter, const DelayPlace& place, const conduction::PathwayDelays& pathway,
-                const look::Theme& theme, TextRoom& room);
+                const look::Theme& theme, StripRoom& room);
 
 } // namespace chronodrome::ui::evidence

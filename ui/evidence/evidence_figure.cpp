@@ -173,7 +173,7 @@ void EvidenceFigure::updateLayout() {
   takeTraces();
   for (auto& row : rows_) {
     const int height = row.rect->height();
-    row.rect->axis(QCPAxis::atLeft)->ticker()->setTickCount(height > 120 ? 4 : height > 48 ? 2 : 1);
+    row.rect->axis(QCPAxis::atLeft)->ticker()->setTickCount(height > 120 ? 5 : height > 40 ? 3 : 2);
     row.rect->axis(QCPAxis::atBottom)->ticker()->setTickCount(std::max(3, row.rect->width() / 120));
     row.rect->axis(QCPAxis::atBottom)->setRange(start_.value(), end_.value());
     if (row.limits) row.rect->axis(QCPAxis::atLeft)->setRange(row.limits->min, row.limits->max);

@@ -86,6 +86,7 @@ private:
   void drawPlateauTexts(QCPPainter& painter, TextRoom& room);
   void drawFoot(QCPPainter& painter);
   void drawLost(QCPPainter& painter, int row);
+  [[nodiscard]] QColor markColor(int row) const; ///< paler while the result is stale
   [[nodiscard]] bool isChosen(const session::PlateauWindow& window) const;
   [[nodiscard]] QRectF bodyRect() const; ///< from the top of the first row to the bottom of the last
   [[nodiscard]] const Row& at(int row) const { return rows_[static_cast<std::size_t>(row)]; }

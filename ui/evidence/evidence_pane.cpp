@@ -139,6 +139,7 @@ void EvidencePane::takeDocument() {
     active_row_ = std::clamp(active_row_, 0, std::max(0, figure_->scene().rows() - 1));
   }
   pages_->setCurrentIndex(recording ? 1 : 0);
+  strip_->setVisible(recording != nullptr);
   showEmptyText();
   showRange();
   showStep();

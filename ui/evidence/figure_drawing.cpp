@@ -18,6 +18,16 @@ namespace {
 constexpr double kRawShare = 0.32;   // of the data colour, for the raw signal beneath the filtered one
 constexpr double kStaleShare = 0.45; // of the role's colour, for marks that are older than the edits
 
+/// A text of words that is too long for one line, cut between two of them.
+QStringList inTwoLines(const QString& text, const QFontMetricsF& metrics, double width) {
+  if (metrics.horizontalAdvance(text) <= width) return {text};
+  for (qsizetype at = text.lastIndexOf(QLatin1Char(' ')); at > 0;
+       at = text.lastIndexOf(QLatin1Char(' '), at - 1)) {
+    if (metrics.horizontalAdvance(text.left(at)) <= width) return {text.left(at), text.mid(at + 1)};
+  }
+  return {text};
+}
+
 } // namespace
 
 QRectF EvidenceFigure::bodyRect() const {
@@ -49,13 +59,20 @@ void EvidenceFigure::drawGround(QCPPainter& painter) {
       painter.drawLine(QPointF(x, body.top()), QPointF(x, body.bottom()));
     }
   }
-  for (int row = 0; row < scene_.rows(); ++row)
+  for (int row = 0; row < scene_.rows(); ++row) {
     drawLost(painter, row);
+    drawMarkLines(painter, rowFrame(row), scene_.marks(row), markColor(row), *theme_);
+  }
+}
+
+QColor EvidenceFigure::markColor(int row) const {
+  const QColor color = theme_->of(scene_.channel(row).role);
+  return scene_.is_stale ? look::blended(color, theme_->surface, kStaleShare) : color;
 }
 
 void EvidenceFigure::drawLost(QCPPainter& painter, int row) {
   const RowFrame frame = rowFrame(row);
-  const QColor hatch = blended(theme_->excluded, theme_->surface, 0.55);
+  const QColor hatch = look::blended(theme_->excluded, theme_->surface, 0.55);
   double last = -1e9;
   for (const auto& lost : scene_.lost[static_cast<std::size_t>(row)]) {
     if (lost.span.end <= start_ || lost.span.start >= end_) continue;
@@ -73,7 +90,7 @@ void EvidenceFigure::drawLost(QCPPainter& painter, int row) {
 }
 
 void EvidenceFigure::drawTraces(QCPPainter& painter) {
-  const QColor faint = blended(theme_->data, theme_->surface, kRawShare);
+  const QColor faint = look::blended(theme_->data, theme_->surface, kRawShare);
   for (int row = 0; row < scene_.rows(); ++row) {
     const RowFrame frame = rowFrame(row);
     const bool is_over = !at(row).filtered.empty();
@@ -85,16 +102,14 @@ void EvidenceFigure::drawTraces(QCPPainter& painter) {
 void EvidenceFigure::drawMarksAndDelays(QCPPainter& painter) {
   for (int row = 0; row < scene_.rows(); ++row) {
     const RowFrame frame = rowFrame(row);
-    const QColor color = theme_->of(scene_.channel(row).role);
     painter.setClipRect(frame.rect.adjusted(-kGlyph, -kGlyph, kGlyph, 0.0));
-    drawMarks(painter, frame, scene_.marks(row),
-              scene_.is_stale ? blended(color, theme_->surface, kStaleShare) : color, *theme_);
+    drawMarks(painter, frame, scene_.marks(row), markColor(row), *theme_);
     for (const auto& pending : scene_.pending) {
-      if (pending.row == row) drawPending(painter, frame, pending, color);
+      if (pending.row == row) drawPending(painter, frame, pending, theme_->of(scene_.channel(row).role));
     }
   }
   painter.setClipping(false);
-  std::vector<TextRoom> rooms(rows_.size());
+  std::vector<StripRoom> rooms(rows_.size());
   for (std::size_t p = 0; p < scene_.pathways.size(); ++p) {
     const auto [from, to] = scene_.pathways[p];
     if (from < 0 || to < 0 || from == to) continue;
@@ -123,8 +138,10 @@ void EvidenceFigure::drawLabels(QCPPainter& painter) {
       if (lost.span.end <= start_ || lost.span.start >= end_) continue;
       const double left = std::max(frame.rect.left(), frame.time.xOf(lost.span.start));
       const double right = std::min(frame.rect.right(), frame.time.xOf(lost.span.end));
-      drawChip(painter, QRectF(left, frame.rect.bottom() - 20.0, right - left, 18.0), lostText(lost),
-               theme_->text_quiet, theme_->surface);
+      const QRectF foot(left, frame.rect.bottom() - 20.0, right - left, 18.0);
+      const QString text = lostText(lost);
+      if (!drawChip(painter, foot, text, theme_->text_quiet, theme_->surface))
+        drawChip(painter, foot, text.section(QLatin1Char(':'), 0, 0), theme_->text_quiet, theme_->surface);
     }
     drawRowLabel(painter, row);
   }
@@ -148,9 +165,15 @@ void EvidenceFigure::drawRowLabel(QCPPainter& painter, int row) {
                      metrics.elidedText(text, Qt::ElideRight, width));
     y += metrics.height();
   };
-  line(QString::fromStdString(channel.label), theme_->font(look::TextSize::normal, true), theme_->text);
+  const QFont bold = theme_->font(look::TextSize::normal, true);
+  for (const QString& part : inTwoLines(QString::fromStdString(channel.label), QFontMetricsF(bold), width))
+    line(part, bold, theme_->text);
   const QFont quiet = theme_->font(look::TextSize::small);
-  for (const QString& part : channelText(channel).split(QStringLiteral(", ")))
+  // Where the row is low the unit comes before the role: without it the axis says nothing.
+  QStringList parts = channelText(channel).split(QStringLiteral(", "));
+  if (parts.size() > 1 && y + 2.0 * QFontMetricsF(quiet).height() > rect.bottom() + 4.0)
+    parts.swapItemsAt(0, 1);
+  for (const QString& part : parts)
     line(part, quiet, theme_->text_quiet);
   if (at(row).is_locked) line(QStringLiteral("scale locked"), quiet, theme_->text_quiet);
 }

@@ -42,11 +42,15 @@ FilteredWork::~FilteredWork() {
 
 void FilteredWork::setChannels(std::vector<recording::Channel> channels,
                                const conditioning::ConditioningSettings& settings) {
+  // After an edit of marks the signal is still the same: it stays on show until it has been filtered again.
+  const auto holder = [](const std::vector<recording::Channel>& list) {
+    return list.empty() ? nullptr : list.front().recording;
+  };
+  if (!task_ || holder(channels) != holder(task_->channels)) stretches_.clear();
   task_ = std::make_shared<Task>();
   task_->channels = std::move(channels);
   task_->plain = settings;
   ++*newest_;
-  stretches_.clear();
   span_.reset();
   wanted_.reset();
 }

@@ -22,7 +22,8 @@ public:
   explicit FilteredWork(QObject* parent = nullptr);
   ~FilteredWork() override;
 
-  /// Channels and settings of the analysis; forgets what was filtered before.
+  /// Channels and settings of the analysis; what was filtered before is shown until it is made
+  /// again.
   void setChannels(std::vector<recording::Channel> channels,
                    const conditioning::ConditioningSettings& settings);
   /// Makes sure that a stretch is filtered, with as much on either side, so that panning finds it ready.

@@ -8,12 +8,6 @@
 
 namespace chronodrome::ui::evidence {
 
-QColor blended(const QColor& color, const QColor& ground, double share) {
-  const auto mix = [&](int a, int b) { return static_cast<int>(std::lround(share * a + (1.0 - share) * b)); };
-  return QColor(mix(color.red(), ground.red()), mix(color.green(), ground.green()),
-                mix(color.blue(), ground.blue()));
-}
-
 void drawHatching(QCPPainter& painter, const QRectF& rect, const QColor& color) {
   if (rect.width() <= 0.0 || rect.height() <= 0.0) return;
   painter.setPen(look::thinPen(color));

@@ -3,6 +3,9 @@
 
 #include "ui/look/custom_plot.h"
 
+#include <utility>
+#include <vector>
+
 #include "base/quantity.h"
 #include "recording/envelope.h"
 #include "ui/look/theme.h"
@@ -35,10 +38,6 @@ struct RowFrame {
   }
 };
 
-/// `share` of `color`, the rest of `ground`: opaque, for transparent pens are slow and look different in
-/// print.
-QColor blended(const QColor& color, const QColor& ground, double share);
-
 /// Diagonal lines, 8 pixels apart, that join those of the neighbours.
 void drawHatching(QCPPainter& painter, const QRectF& rect, const QColor& color);
 
@@ -51,9 +50,16 @@ class TextRoom {
 public:
   /// True, and taken, if nothing lies between `left` and `right` yet.
   bool take(double left, double right);
+  /// Taken whatever lies there.
+  void occupy(double left, double right) { taken_.emplace_back(left, right); }
 
 private:
   std::vector<std::pair<double, double>> taken_;
+};
+
+/// The two lines of text of a strip between rows.
+struct StripRoom {
+  TextRoom upper, lower;
 };
 
 } // namespace chronodrome::ui::evidence

@@ -53,27 +53,46 @@ void drawGlyph(QCPPainter& painter, const QPointF& top, Origin origin, const QCo
   painter.restore();
 }
 
+void drawMarkLines(QCPPainter& painter, const RowFrame& row, std::span<const Activation> marks,
+                   const QColor& color, const look::Theme& theme) {
+  if (marksApart(marks, row.time) < kMarksApart) return;
+  const auto [first, end] = marksWithin(marks, row.time);
+  QVector<QLineF> lines;
+  for (std::size_t i = first; i < end; ++i) {
+    const double x = std::round(row.time.xOf(marks[i].time));
+    lines.append(QLineF(x, row.rect.top(), x, row.rect.bottom()));
+  }
+  painter.setPen(look::thinPen(look::blended(color, theme.surface, 0.6)));
+  painter.drawLines(lines);
+}
+
 void drawMarks(QCPPainter& painter, const RowFrame& row, std::span<const Activation> marks,
                const QColor& color, const look::Theme& theme) {
   const auto [first, end] = marksWithin(marks, row.time);
   const double apart = marksApart(marks, row.time);
   const bool is_dense = apart < kMarksApart;
-  const double tick = apart < kBand ? kShortTick : kTick;
-  QVector<QLineF> lines;
-  double drawn = -1e9;
-  for (std::size_t i = first; i < end; ++i) {
-    const double x = std::round(row.time.xOf(marks[i].time));
-    // Hours of beats fall on few pixels: each is drawn once.
-    if (is_dense && x - drawn < 1.0) continue;
-    drawn = x;
-    lines.append(QLineF(x, row.rect.top(), x, is_dense ? row.rect.top() + tick : row.rect.bottom()));
+  const double tick = !is_dense ? 0.0 : apart < kBand ? kShortTick : kTick;
+  if (is_dense) {
+    QVector<QLineF> lines;
+    double drawn = -1e9;
+    for (std::size_t i = first; i < end; ++i) {
+      const double x = std::floor(row.time.xOf(marks[i].time));
+      // Hours of beats fall on few pixels: each is drawn once.
+      if (x == drawn) continue;
+      drawn = x;
+      lines.append(QLineF(x, row.rect.top(), x, row.rect.top() + tick - 1.0));
+    }
+    painter.setPen(look::thinPen(color));
+    painter.drawLines(lines);
   }
-  painter.setPen(look::thinPen(is_dense ? color : blended(color, theme.surface, 0.55)));
-  painter.drawLines(lines);
   for (std::size_t i = first; i < end; ++i) {
     if (is_dense && marks[i].origin == Origin::detected) continue;
-    const QPointF top(std::round(row.time.xOf(marks[i].time)) + 0.5, row.rect.top());
-    drawGlyph(painter, top, marks[i].origin, color);
+    // Below the ticks, on a ground of its own, so that its shape is told over ticks and trace.
+    const QPointF top(std::round(row.time.xOf(marks[i].time)) + 0.5, row.rect.top() + tick);
+    if (is_dense)
+      painter.fillRect(QRectF(top.x() - kGlyph / 2 - 1.5, top.y(), kGlyph + 3.0, kGlyph + 2.0),
+                       theme.surface);
+    drawGlyph(painter, top + QPointF(0.0, is_dense ? 1.0 : 0.0), marks[i].origin, color);
   }
 }
 

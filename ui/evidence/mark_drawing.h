@@ -27,7 +27,11 @@ double marksApart(std::span<const activation::Activation> marks, const TimeFrame
 /// Origin by shape: a detected mark is a triangle, an added one a filled circle, a moved one a diamond.
 void drawGlyph(QCPPainter& painter, const QPointF& top, activation::Origin origin, const QColor& color);
 
-/// All marks of a row.
+/// The lines of a row's marks: they go beneath the trace, whose steepest part would be hidden by them.
+void drawMarkLines(QCPPainter& painter, const RowFrame& row, std::span<const activation::Activation> marks,
+                   const QColor& color, const look::Theme& theme);
+
+/// The shapes of a row's marks at its top; ticks where marks are too near for shapes.
 void drawMarks(QCPPainter& painter, const RowFrame& row, std::span<const activation::Activation> marks,
                const QColor& color, const look::Theme& theme);
 

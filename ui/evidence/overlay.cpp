@@ -58,7 +58,7 @@ private:
     painter_.setPen(look::thinPen(theme_.accent));
     painter_.drawLine(box.topLeft(), box.bottomLeft());
     painter_.drawLine(box.topRight(), box.bottomRight());
-    drawChip(painter_, QRectF(box.left(), box.top() + 2.0, box.width(), 18.0),
+    drawChip(painter_, QRectF(box.left(), box.bottom() - 20.0, box.width(), 18.0),
              millisecondsText(selection.end - selection.start), theme_.on_accent, theme_.accent);
   }
 

@@ -3,6 +3,8 @@
 
 #include <algorithm>
 
+#include <QPaintEngine>
+
 #include "conditioning/stretch.h"
 #include "session/analysis_settings.h"
 #include "session/stretches.h"
@@ -32,6 +34,11 @@ std::vector<recording::Channel> filteredOf(const session::SessionResult& result,
 void paintTraces(QCPPainter& painter, QSize size, const session::SessionResult& result, Seconds start,
                  Seconds end, const look::Theme& theme) {
   if (!(end > start) || size.isEmpty()) return;
+  // On a vector device traces are lines, and labels text; on pixels they may be pictures.
+  if (painter.paintEngine()->type() != QPaintEngine::Raster) {
+    painter.setMode(QCPPainter::pmVectorized);
+    painter.setMode(QCPPainter::pmNoCaching);
+  }
   EvidenceFigure figure;
   figure.setTheme(theme);
   // Borrowed for the time of this call.

@@ -40,7 +40,11 @@ QAction* EvidencePane::add(const char* name, const QString& text, const QList<QK
   auto* action = new QAction(text, this);
   action->setObjectName(QLatin1String(name));
   action->setShortcuts(sequences);
-  action->setShortcutContext(Qt::WidgetWithChildrenShortcut);
+  // Letters and arrows belong to the traces; what takes Ctrl or Alt is meant wherever the keyboard is.
+  const Qt::KeyboardModifiers held =
+      sequences.isEmpty() ? Qt::NoModifier : sequences.front()[0].keyboardModifiers();
+  action->setShortcutContext(held & (Qt::ControlModifier | Qt::AltModifier) ? Qt::WindowShortcut
+                                                                            : Qt::WidgetWithChildrenShortcut);
   action->setToolTip(tip);
   action->setProperty("menu", QLatin1String(menu));
   if (what != nullptr) connect(action, &QAction::triggered, this, what);
@@ -164,9 +168,11 @@ void EvidencePane::addEditActions() {
       add("actionDeleteMark", QStringLiteral("&Delete the chosen mark"), keys({"Del", "Backspace"}), "Edit",
           QStringLiteral("click a mark to choose it"), &EvidencePane::deleteChosen);
   recording_actions_.removeOne(delete_action_);
-  result_actions_ << add("actionExclude", QStringLiteral("Leave the stretch &out…"), keys({"X"}), "Edit",
-                         QStringLiteral("what is selected with Alt and drag, or lies between the cursors"),
-                         &EvidencePane::askReason);
+  result_actions_ << add(
+      "actionExclude", QStringLiteral("Leave the stretch &out…"), keys({"X"}), "Edit",
+      QStringLiteral(
+          "what is selected by dragging with Alt or the right button, or lies between the cursors"),
+      &EvidencePane::askReason);
   result_actions_ << add("actionInclude", QStringLiteral("Take the stretch &back in"), keys({"Shift+X"}),
                          "Edit",
                          QStringLiteral("undoes a leaving out within the selected stretch, or at the cursor"),

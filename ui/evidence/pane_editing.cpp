@@ -95,7 +95,8 @@ std::optional<Overlay::Selection> EvidencePane::stretch() const {
 void EvidencePane::askReason() {
   const auto chosen = stretch();
   if (!chosen) {
-    bar_->tell(QStringLiteral("Select a stretch first: drag with Alt held, or place both cursors."));
+    bar_->tell(QStringLiteral(
+        "Select a stretch first: drag with Alt or the right button held, or place both cursors."));
     return;
   }
   selection_ = chosen;
@@ -113,7 +114,8 @@ void EvidencePane::askReason() {
     showOverlay();
     return QString();
   };
-  bar_->ask(QStringLiteral("reasonLineEdit"), question, QStringLiteral("because …"), channels,
+  bar_->ask(QStringLiteral("reasonLineEdit"), question,
+            QStringLiteral("because … (Return leaves it out, Escape does not)"), channels,
             channels.at(chosen->row < 0 ? 0 : chosen->row + 1), answer);
 }
 

@@ -56,7 +56,8 @@ void Pointer::abort() {
 
 bool Pointer::press(const QMouseEvent& event) {
   figure_.setFocus(Qt::MouseFocusReason);
-  if (event.button() != Qt::LeftButton) return false;
+  if (event.button() != Qt::LeftButton && event.button() != Qt::RightButton) return false;
+  button_ = event.button();
   pressed_ = last_ = event.position();
   modifiers_ = event.modifiers();
   row_ = figure_.rowAt(pressed_.y());
@@ -72,7 +73,8 @@ void Pointer::begin(const QPointF& at) {
     return;
   if (figure_.isOnAxis(pressed_)) {
     hand_ = Hand::axis;
-  } else if (modifiers_ & Qt::AltModifier) {
+  } else if ((modifiers_ & Qt::AltModifier) || button_ == Qt::RightButton) {
+    // Some desktops keep Alt and drag for themselves.
     hand_ = Hand::stretch;
   } else if (mark_) {
     hand_ = Hand::mark;
@@ -132,12 +134,12 @@ void Pointer::showShape(const QPointF& at) {
 }
 
 bool Pointer::release(const QMouseEvent& event) {
-  if (event.button() != Qt::LeftButton) return false;
+  if (event.button() != button_) return false;
   const Hand hand = std::exchange(hand_, Hand::free);
   const QPointF at = event.position();
   if (hand == Hand::panning) figure_.unsetCursor();
   if (hand == Hand::mark) Q_EMIT markDropped(row_, *mark_, at.x());
-  if (hand == Hand::pressed && !figure_.isOnAxis(at)) {
+  if (hand == Hand::pressed && button_ == Qt::LeftButton && !figure_.isOnAxis(at)) {
     if (mark_) {
       Q_EMIT markChosen(row_, *mark_);
     } else if (at.x() >= figure_.timeFrame().left) {

@@ -58,6 +58,7 @@ private:
   std::optional<QPointF> position_;
   QPointF pressed_, last_;
   Qt::KeyboardModifiers modifiers_;
+  Qt::MouseButton button_ = Qt::NoButton;
   int row_ = -1;
   std::optional<std::size_t> mark_;
 };

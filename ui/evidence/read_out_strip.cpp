@@ -58,6 +58,7 @@ void ReadOutStrip::paintEvent(QPaintEvent*) {
       wide = std::max(wide, metrics.horizontalAdvance(row.at(column)));
     // The first column does not move while the pointer does.
     if (column == 0) wide = std::max(wide, 33 * look::kUnit);
+    wide += 2; // an exact fit is elided by the rounding of the font
     const int room = std::min(wide, width() - look::kUnit - left);
     if (room <= 0) break;
     const auto write = [&](int line, const QString& text, const QColor& ink) {

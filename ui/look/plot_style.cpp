@@ -10,8 +10,11 @@
 namespace chronodrome::ui::look {
 namespace {
 
+/// Decimals that write every multiple of a step as it is: one for 0.5, two for 0.25.
 int decimalsOf(double step) {
-  return std::clamp(static_cast<int>(-std::floor(std::log10(step) + 1e-9)), 0, 9);
+  const int first = std::clamp(static_cast<int>(-std::floor(std::log10(step) + 1e-9)), 0, 9);
+  const double scaled = step * std::pow(10.0, first);
+  return std::abs(scaled - std::round(scaled)) < 1e-6 * scaled ? first : std::min(first + 1, 9);
 }
 
 } // namespace

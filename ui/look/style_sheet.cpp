@@ -5,7 +5,7 @@ namespace chronodrome::ui::look {
 
 QString styleSheet(const Theme& theme) {
   QString rules = QStringLiteral(R"(
-* { font-size: 13px; }
+* { font-size: 13px; font-family: "$family"; }
 QMainWindow, QDialog { background: $window; }
 QToolTip { background: $raised; color: $text; border: 1px solid $line; padding: 4px; }
 QMenuBar { background: $window; color: $text; }
@@ -32,7 +32,12 @@ QLineEdit, QPlainTextEdit, QTextEdit, QComboBox, QSpinBox, QDoubleSpinBox {
   selection-background-color: $accent; selection-color: $on_accent; }
 QLineEdit:focus, QPlainTextEdit:focus, QTextEdit:focus, QComboBox:focus, QSpinBox:focus, QDoubleSpinBox:focus {
   border: 1px solid $accent; }
-QComboBox::drop-down { border: none; width: 20px; }
+QComboBox { padding-right: 24px; }
+QComboBox::drop-down { border: none; width: 24px; subcontrol-origin: border; subcontrol-position: center right; }
+QComboBox::down-arrow { image: none; width: 0; height: 0; border-left: 4px solid transparent;
+  border-right: 4px solid transparent; border-top: 5px solid $text_quiet; }
+QCheckBox::indicator:unchecked { width: 11px; height: 11px; border: 1px solid $text_quiet;
+  border-radius: 2px; background: $surface; }
 QComboBox QAbstractItemView { background: $surface; color: $text; border: 1px solid $line;
   selection-background-color: $accent_fill; selection-color: $text; }
 QTableView, QTreeView, QListView { background: $surface; color: $text; border: 1px solid $line; gridline-color: $grid;
@@ -50,8 +55,6 @@ QScrollBar::add-line, QScrollBar::sub-line { width: 0; height: 0; }
 QSplitter::handle { background: $window; }
 QSplitter::handle:hover { background: $accent_fill; }
 QLabel[quiet="true"] { color: $text_quiet; }
-QLabel[size="small"] { font-size: 11px; }
-QLabel[size="large"] { font-size: 17px; }
 QLabel[textSize="small"] { font-size: 11px; }
 QLabel[textSize="large"] { font-size: 17px; }
 QLabel[tone="caution"] { color: $caution; }
@@ -75,6 +78,7 @@ QLabel[tone="fault"] { color: $fault; }
   };
   for (const auto& [name, color] : names)
     rules.replace(QLatin1String(name), color.name());
+  rules.replace(QLatin1String("$family"), theme.font(TextSize::normal).family());
   return rules;
 }
 

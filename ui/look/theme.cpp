@@ -176,6 +176,12 @@ const Theme& Theme::of(Mode mode) {
   return light;
 }
 
+QColor blended(const QColor& color, const QColor& ground, double share) {
+  const auto mix = [&](int a, int b) { return static_cast<int>(std::lround(share * a + (1.0 - share) * b)); };
+  return QColor(mix(color.red(), ground.red()), mix(color.green(), ground.green()),
+                mix(color.blue(), ground.blue()));
+}
+
 double contrast(const QColor& a, const QColor& b) {
   const double high = std::max(luminance(a), luminance(b));
   const double low = std::min(luminance(a), luminance(b));

@@ -54,6 +54,10 @@ inline constexpr int kUnit = 8;
 inline constexpr int kThin = 1;
 inline constexpr int kThick = 2;
 
+/// `share` (0 to 1) of `color`, the rest of `ground`. Opaque: transparent pens are slow, and print
+/// differently.
+QColor blended(const QColor& color, const QColor& ground, double share);
+
 /// Ratio of luminances, 1 to 21 (WCAG 2.1, definition of contrast ratio).
 double contrast(const QColor& a, const QColor& b);
 

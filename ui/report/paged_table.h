@@ -38,7 +38,6 @@ private:
   std::vector<double> widths_; ///< of the texts, without padding
   Row head_;
   std::vector<Row> rows_;
-  double line_height_ = 0.0;
 };
 
 /// Font of the paper at a size, without the hinting of a screen.

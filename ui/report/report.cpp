@@ -1,14 +1,21 @@
 // Chronodrome, GPL-3.0-or-later.
 #include "ui/report/report.h"
 
-#include <QFontDatabase>
+#include <QRawFont>
 
+#include "ui/look/theme.h"
 #include "ui/report/html_writer.h"
 #include "ui/report/pdf_writer.h"
 #include "ui/report/sections.h"
 
 namespace chronodrome::ui::report {
 namespace {
+
+/// Where no font is there Qt names some all the same, and draws boxes; only a real one has its tables.
+bool hasFont() {
+  const QFont font = look::Theme::of(look::Mode::paper).font(look::TextSize::normal);
+  return !QRawFont::fromFont(font).fontTable("head").isEmpty();
+}
 
 std::string bytesOf(const QByteArray& bytes) {
   return {bytes.constData(), static_cast<std::size_t>(bytes.size())};
@@ -21,7 +28,7 @@ std::string reportHtml(const session::SessionResult& result, const std::string& 
 }
 
 Result<std::string> reportPdf(const session::SessionResult& result, const std::string& version) {
-  if (QFontDatabase::families().isEmpty()) {
+  if (!hasFont()) {
     return Error{ErrorCode::cannot_write,
                  "report.pdf",
                  {},

@@ -128,7 +128,7 @@ void addTypicalBeats(Content& content, const SessionResult& result) {
                      "of the recording."),
       Tone::quiet});
   const QSize size(kContentWidth,
-                   44 + 60 * static_cast<int>(std::clamp<std::size_t>(result.channels.size(), 1, 8)));
+                   44 + 66 * static_cast<int>(std::clamp<std::size_t>(result.channels.size(), 1, 8)));
   const auto* all = &result;
   for (const auto& excerpt : excerpts) {
     const Seconds start = excerpt.start;

@@ -22,8 +22,7 @@ QString shareText(double share) {
 QString mainsText(const results::ChannelQuality& one, const std::string& unit) {
   if (one.mains_hz == 0.0) return QStringLiteral("none removed");
   QString text = QString::fromStdString(fixed_text(one.mains_hz, 2)) + QStringLiteral("\u00A0Hz");
-  if (one.mains_rms)
-    text += QStringLiteral(", ") + look::withUnit(*one.mains_rms, unit) + QStringLiteral(" rms");
+  if (one.mains_rms) text += QStringLiteral(", ") + look::withUnit(*one.mains_rms, unit);
   return text;
 }
 
@@ -69,7 +68,7 @@ void addQuality(Content& content, const SessionResult& result) {
                    {QStringLiteral("signal to noise"), true},
                    {QStringLiteral("clipped"), true},
                    {QStringLiteral("unreadable"), true},
-                   {QStringLiteral("mains hum removed"), false},
+                   {QStringLiteral("mains removed, rms"), false},
                    {QStringLiteral("timing SD,\u00A0ms"), true},
                    {QStringLiteral("lowest quality, at"), true}};
   const double limit = std::get<double>(result.settings.at("intervals.low_confidence"));

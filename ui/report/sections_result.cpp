@@ -236,7 +236,11 @@ void addFlags(Content& content, const SessionResult& result) {
                                  plain(meaning.advice) + QLatin1Char('.')});
   }
   if (bullets.items.empty()) {
-    content.blocks.emplace_back(Paragraph{QStringLiteral("No fit carries a flag."), Tone::normal});
+    const auto remarked = std::count_if(result.responses.rows.begin(), result.responses.rows.end(),
+                                        [](const auto& row) { return !row.flags.empty(); });
+    QString text = QStringLiteral("No fit carries a flag.");
+    if (remarked > 0) text += QStringLiteral(" Responses with a remark (†, above): %1.").arg(remarked);
+    content.blocks.emplace_back(Paragraph{text, Tone::normal});
     return;
   }
   content.blocks.emplace_back(std::move(bullets));

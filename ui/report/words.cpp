@@ -52,18 +52,23 @@ QString withoutStop(const std::string& sentence) {
 
 } // namespace
 
-QString plain(const QString& text) {
-  QString clean;
-  clean.reserve(text.size());
-  for (const QChar c : text) {
+QString withoutControls(const QString& markup) {
+  QString clean = markup;
+  for (QChar& c : clean) {
     const ushort code = c.unicode();
-    if (code == 0x09 || code == 0x0A || code == 0x0D || code == 0x2028 || code == 0x2029) {
-      clean += QLatin1Char(' ');
-    } else if (code < 0x20 || (code >= 0x7F && code < 0xA0) || code == 0xFFFE || code == 0xFFFF) {
-      clean += QChar(0xFFFD);
-    } else {
-      clean += c;
-    }
+    const bool is_blank = code == 0x09 || code == 0x0A || code == 0x0D;
+    if ((code < 0x20 && !is_blank) || (code >= 0x7F && code < 0xA0) || code == 0xFFFE || code == 0xFFFF)
+      c = QChar(0xFFFD);
+  }
+  return clean;
+}
+
+QString plain(const QString& text) {
+  QString clean = withoutControls(text);
+  for (QChar& c : clean) {
+    const ushort code = c.unicode();
+    if (code == 0x09 || code == 0x0A || code == 0x0D || code == 0x2028 || code == 0x2029)
+      c = QLatin1Char(' ');
   }
   return clean;
 }

@@ -17,6 +17,8 @@ namespace chronodrome::ui::report {
 /// or XML can hold replaced.
 QString plain(std::string_view text);
 QString plain(const QString& text);
+/// The same, line ends and tabs left as they are: for markup of ours.
+QString withoutControls(const QString& markup);
 
 /// `not stated` for an empty text.
 QString statedOr(const std::string& text);

@@ -227,10 +227,7 @@ void AdditionsForm::showProblems(const session::ProtocolCheck& found) {
                                       : QStringLiteral("%1 things to look at").arg(count));
   setTone(*checks_title_, count == 0 ? QString() : QStringLiteral("caution"));
   checks_->setVisible(count > 0);
-  int height = 2 * checks_->frameWidth() + look::kUnit / 2;
-  for (int i = 0; i < count; ++i)
-    height += checks_->sizeHintForRow(i);
-  checks_->setFixedHeight(std::min(height, 14 * look::kUnit));
+  fitChecks();
 }
 
 void AdditionsForm::showSteps(const protocol::CurvePlan& plan) {

@@ -46,6 +46,7 @@ Q_SIGNALS:
 protected:
   void keyPressEvent(QKeyEvent* event) override;
   bool eventFilter(QObject* watched, QEvent* event) override;
+  void resizeEvent(QResizeEvent* event) override;
 
 private:
   void build();
@@ -61,6 +62,7 @@ private:
   void showSteps(const protocol::CurvePlan& plan);
   void followState();
   void say(const QString& text);
+  void fitChecks();
   [[nodiscard]] EventCells freshCells() const;
   [[nodiscard]] int currentRow() const;
   void goToRow(int row);

@@ -70,8 +70,8 @@ void AdditionsForm::build() {
   table_->verticalHeader()->show();
   table_->verticalHeader()->setDefaultSectionSize(4 * kUnit - 4);
   table_->horizontalHeader()->setStretchLastSection(true);
-  const std::pair<int, int> widths[] = {{kTime, 7},    {kEvent, 10}, {kAgent, 12}, {kConcentration, 7},
-                                        {kUnitOf, 5},  {kNote, 10},  {kStock, 11}, {kVolume, 10},
+  const std::pair<int, int> widths[] = {{kTime, 7},    {kEvent, 9}, {kAgent, 11}, {kConcentration, 6},
+                                        {kUnitOf, 5},  {kNote, 10}, {kStock, 11}, {kVolume, 10},
                                         {kArrival, 9}, {kCurve, 6}};
   for (const auto& [column, units] : widths)
     table_->setColumnWidth(column, units * kUnit);
@@ -174,6 +174,24 @@ QWidget* AdditionsForm::buildChecks() {
   column->addWidget(headingLabel(QStringLiteral("Curves and steps"), part));
   column->addWidget(steps_, 1);
   return part;
+}
+
+/// As tall as its words need, up to a limit; the rest scrolls.
+void AdditionsForm::fitChecks() {
+  constexpr int kPadding = 4;
+  const int wide = std::max(20 * kUnit, width() - 4 * kUnit - 4 * kPadding);
+  int height = 2 * checks_->frameWidth() + kPadding;
+  for (int i = 0; i < checks_->count(); ++i)
+    height += checks_->fontMetrics()
+                  .boundingRect(0, 0, wide, 100 * kUnit, Qt::TextWordWrap, checks_->item(i)->text())
+                  .height() +
+              2;
+  checks_->setFixedHeight(std::min(height, 14 * kUnit));
+}
+
+void AdditionsForm::resizeEvent(QResizeEvent* event) {
+  QWidget::resizeEvent(event);
+  fitChecks();
 }
 
 void AdditionsForm::setTheme(const look::Theme& theme) {

@@ -54,6 +54,21 @@ void ChoiceDelegate::updateEditorGeometry(QWidget* editor, const QStyleOptionVie
   editor->setGeometry(option.rect);
 }
 
+void ChoiceDelegate::paint(QPainter* painter, const QStyleOptionViewItem& option,
+                           const QModelIndex& index) const {
+  QStyledItemDelegate::paint(painter, option, index);
+  if (!index.data(Qt::CheckStateRole).isValid()) return;
+  QStyleOptionViewItem full = option;
+  initStyleOption(&full, index);
+  const QStyle* style = full.widget == nullptr ? QApplication::style() : full.widget->style();
+  const QRect box = style->subElementRect(QStyle::SE_ItemViewItemCheckIndicator, &full, full.widget);
+  painter->save();
+  painter->setPen(look::thinPen(option.palette.color(QPalette::PlaceholderText)));
+  painter->setBrush(Qt::NoBrush);
+  painter->drawRoundedRect(QRectF(box).adjusted(0.5, 0.5, -0.5, -0.5), 2, 2);
+  painter->restore();
+}
+
 namespace {
 
 /// One run of a trace as a line through the lowest and the highest value of each column.

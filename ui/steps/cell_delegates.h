@@ -20,6 +20,8 @@ public:
   void setModelData(QWidget* editor, QAbstractItemModel* model, const QModelIndex& index) const override;
   void updateEditorGeometry(QWidget* editor, const QStyleOptionViewItem& option,
                             const QModelIndex& index) const override;
+  /// Boxes to tick get a frame in the colour of quiet text: the style's own is lost on a dark ground.
+  void paint(QPainter* painter, const QStyleOptionViewItem& option, const QModelIndex& index) const override;
 };
 
 /// Draws the small trace of a signal, in the colour of its role: only with a ChannelTableModel.

@@ -67,9 +67,11 @@ QString fileFactsText(const recording::Recording& recording) {
     QString line =
         QStringLiteral("%1: %2 Hz")
             .arg(QString::fromStdString(signal.source), statedText(signal.time_base.rate().value()));
-    if (signal.rails)
-      line += QStringLiteral(", %1 to %2")
-                  .arg(look::plainText((*signal.rails)[0]), look::withUnit((*signal.rails)[1], signal.unit));
+    if (signal.rails) {
+      line +=
+          QStringLiteral(", %1 to %2").arg(statedText((*signal.rails)[0]), statedText((*signal.rails)[1]));
+      if (!signal.unit.empty()) line += QLatin1Char(' ') + look::unitText(signal.unit);
+    }
     if (!signal.prefilter.empty())
       line += QStringLiteral(", %1").arg(QString::fromStdString(signal.prefilter));
     lines << line;

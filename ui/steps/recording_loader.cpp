@@ -13,7 +13,7 @@ namespace chronodrome::ui::steps {
 namespace {
 
 constexpr std::size_t kHeadLines = 40;
-constexpr std::size_t kTraceColumns = 480; // enough for the widest column of the table
+constexpr std::size_t kTraceColumns = 2048; // pixels of the widest column on a dense screen
 
 /// A source that also says how far it is, in steps that are worth a repaint.
 class ReportingSource : public intake::WatchedSource {

@@ -36,7 +36,6 @@ void dressTable(QTableView& view) {
   view.horizontalHeader()->setMinimumSectionSize(5 * look::kUnit);
   view.setHorizontalScrollMode(QAbstractItemView::ScrollPerPixel);
   view.setWordWrap(false);
-  view.setStyleSheet(QStringLiteral("QTableView::item { padding-left: 5px; }")); // in line with the headings
 }
 
 ChannelTable::ChannelTable(SessionDraft& draft, bool traces, QWidget* parent)

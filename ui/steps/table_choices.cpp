@@ -87,7 +87,6 @@ TableChoices::TableChoices(QWidget* parent) : QWidget(parent) {
   lines_->setReadOnly(true);
   lines_->setLineWrapMode(QPlainTextEdit::NoWrap);
   lines_->setTabChangesFocus(true);
-  lines_->setFont(QFontDatabase::systemFont(QFontDatabase::FixedFont));
   lines_->setFixedHeight(18 * look::kUnit);
   grid->addWidget(lines_, 5, 0, 1, 2);
   grid->setColumnStretch(1, 1);
@@ -122,9 +121,10 @@ QComboBox* TableChoices::addChoice(QGridLayout& grid, int row, const QString& na
 
 void TableChoices::setTheme(const look::Theme& theme) {
   lines_->document()->setDocumentMargin(look::kUnit / 2);
-  QFont font = QFontDatabase::systemFont(QFontDatabase::FixedFont);
-  font.setPixelSize(theme.font(look::TextSize::small).pixelSize());
-  lines_->setFont(font);
+  // A style sheet of the window would win over a font that is set.
+  lines_->setStyleSheet(QStringLiteral("QPlainTextEdit { font-family: \"%1\"; font-size: %2px; }")
+                            .arg(QFontDatabase::systemFont(QFontDatabase::FixedFont).family())
+                            .arg(theme.font(look::TextSize::small).pixelSize()));
 }
 
 void TableChoices::clear() {

@@ -104,24 +104,29 @@ void BathRibbon::drawLabels(QCPPainter& painter, const session::BathLane& lane, 
   const QFontMetricsF metrics(painter.font());
   painter.setPen(state_.theme.text);
   const QString agent = QString::fromStdString(lane.agent);
+  const auto roomFor = [&](const QString& text) { return metrics.horizontalAdvance(text) + 2.0 * kLabelPad; };
   bool isNamed = false;
-  double lastRight = rect.left() - 1e9;
-  for (const auto& step : lane.steps) {
-    QRectF bar = barOf(step, rect);
+  double lastRight = -1e9; // of the step before
+  double free = -1e9;      // where the label before ends
+  for (std::size_t i = 0; i < lane.steps.size(); ++i) {
+    const auto& step = lane.steps[i];
+    const QRectF bar = barOf(step, rect).intersected(rect);
     // After a pause without the agent its name is said again.
-    if (bar.left() - lastRight > 0.5) isNamed = false;
-    lastRight = bar.right();
-    if (!step.logged) continue; // thinned by another addition: the label before still says what was given
-    bar = bar.intersected(rect);
+    if (xOf(step.start) - lastRight > 0.5) isNamed = false;
+    lastRight = xOf(step.end);
+    if (!step.logged || bar.width() <= 0.0) continue; // thinned by another addition: its amount stands before
     const QString amount = look::concentrationText(step.concentration);
     const QString full = agent + QLatin1Char(' ') + amount;
-    const auto fits = [&](const QString& text) {
-      return metrics.horizontalAdvance(text) + 2.0 * kLabelPad <= bar.width();
-    };
-    const QString text = !isNamed && fits(full) ? full : fits(amount) ? amount : QString();
-    if (text.isEmpty()) continue;
-    if (text == full) isNamed = true;
-    painter.drawText(QRectF(bar.left() + kLabelPad, rect.bottom() - kLowestBar, bar.width(), kLowestBar),
+    const bool isFull = !isNamed && roomFor(full) <= bar.width();
+    const QString text = isFull ? full : amount;
+    // Of narrow steps every second, third ... bears its amount, at its start and over the steps after it.
+    double runEnd = bar.right();
+    for (std::size_t k = i + 1; k < lane.steps.size() && lane.steps[k].start <= lane.steps[k - 1].end; ++k)
+      runEnd = std::min(rect.right(), xOf(lane.steps[k].end));
+    if (bar.left() < free || bar.left() + roomFor(text) > runEnd) continue;
+    isNamed = isNamed || isFull;
+    free = bar.left() + roomFor(text);
+    painter.drawText(QRectF(bar.left() + kLabelPad, rect.bottom() - kLowestBar, roomFor(text), kLowestBar),
                      Qt::AlignLeft | Qt::AlignVCenter, text);
   }
 }
@@ -141,9 +146,12 @@ void BathRibbon::drawMarks(QCPPainter& painter, const QRectF& rect) const {
     QString text =
         mark.kind == protocol::EventKind::washout ? QStringLiteral("washout") : QStringLiteral("vehicle");
     if (metrics.horizontalAdvance(text) + 2.0 * kLabelPad > room) continue;
-    // Only where nothing of the lane is written: in a bath without agent, or above the bars.
-    if (mark.kind != protocol::EventKind::washout && !session::agents_at(course, mark.arrival).empty())
-      continue;
+    // Only where no bar of this lane, with its own words, lies.
+    const auto& steps = course.lanes.front().steps;
+    const bool isOverBar = std::any_of(steps.begin(), steps.end(), [&](const session::BathStep& step) {
+      return step.start <= mark.arrival && mark.arrival < step.end;
+    });
+    if (isOverBar) continue;
     painter.setPen(state_.theme.text_quiet);
     painter.drawText(QRectF(x + kLabelPad, rect.bottom() - kLowestBar, room, kLowestBar),
                      Qt::AlignLeft | Qt::AlignVCenter, text);

@@ -44,7 +44,7 @@ ExcludeBar::ExcludeBar(QWidget* parent)
   channel_->setAccessibleName(QStringLiteral("channel to leave out"));
   reason_->setObjectName(QStringLiteral("excludeReasonLineEdit"));
   reason_->setAccessibleName(QStringLiteral("reason for leaving it out"));
-  reason_->setPlaceholderText(QStringLiteral("why: it stands in the session and in the report"));
+  reason_->setPlaceholderText(QStringLiteral("why (kept with the session)"));
   auto* cancel = button(QStringLiteral("cancelExcludePushButton"), QStringLiteral("cancel"));
 
   auto* row = new QHBoxLayout(this);

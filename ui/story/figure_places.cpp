@@ -95,7 +95,8 @@ std::optional<Hit> StoryFigure::frameHit(QPointF place) const {
 std::optional<Hit> StoryFigure::bandHit(QPointF place, const Row& row) const {
   if (!state_.bands) return std::nullopt;
   const auto& responses = state_.bands->responses.rows;
-  std::optional<Hit> body;
+  std::optional<Hit> nearest;
+  double away = 1e9;
   for (std::size_t i = 0; i < responses.size(); ++i) {
     const auto& response = responses[i];
     if (response.measure != state_.content->trends[row.trend].measure ||
@@ -104,16 +105,24 @@ std::optional<Hit> StoryFigure::bandHit(QPointF place, const Row& row) const {
     const QRectF band = row.bands->bandOf(response);
     const auto edge = edgeAt(place.x(), band.left(), band.right());
     if (!edge) continue;
-    Hit hit;
-    hit.response = i;
-    hit.trend = row.trend;
-    hit.part = *edge < 0 ? Hit::Part::bandStart : *edge > 0 ? Hit::Part::bandEnd : Hit::Part::band;
-    // Where two bands meet, the chosen one is caught, else the edge.
+    // Where two bands meet, the edge of the chosen one is caught, else the nearer edge.
     const bool isChosen = state_.chosen && isOfStep(response, *state_.chosen);
-    if (isChosen && *edge != 0) return hit;
-    if (!body || body->part == Hit::Part::band) body = hit;
+    const double toEdge = *edge < 0 ? std::abs(place.x() - band.left()) : std::abs(place.x() - band.right());
+    const double distance = *edge == 0 ? kReach : isChosen ? -1.0 : toEdge;
+    if (distance >= away) continue;
+    away = distance;
+    nearest = Hit{};
+    nearest->response = i;
+    nearest->part = *edge < 0 ? Hit::Part::bandStart : *edge > 0 ? Hit::Part::bandEnd : Hit::Part::band;
   }
-  return body;
+  return nearest;
+}
+
+const StoryFigure::Row* StoryFigure::rowAt(double y) const {
+  for (const auto& row : rows_) {
+    if (row.rect && y >= row.rect->top() - kReach && y <= row.rect->bottom() + kReach) return &row;
+  }
+  return nullptr;
 }
 
 Hit StoryFigure::hitAt(QPointF place) const {
@@ -124,32 +133,27 @@ Hit StoryFigure::hitAt(QPointF place) const {
     hit.part = Hit::Part::gutter;
     return hit;
   }
-  const auto finished = [&](Hit found) {
-    found.time = hit.time;
-    return found;
-  };
+  const Row* row = rowAt(place.y());
+  if (row != nullptr) {
+    hit.area = Hit::Part::row;
+    hit.trend = row->trend;
+  } else if (place.y() >= rhythm_rect_->top() - kReach) {
+    hit.area = Hit::Part::rhythm;
+  } else if (place.y() >= bath_rect_->top() && place.y() <= bath_rect_->bottom() + kReach) {
+    hit.area = Hit::Part::bath;
+  }
+  hit.part = hit.area;
+  const auto band = row != nullptr ? bandHit(place, *row) : std::nullopt;
   const auto frame = frameHit(place);
   const bool isFrameEdge =
       frame && (frame->part == Hit::Part::frameStart || frame->part == Hit::Part::frameEnd);
-  for (const auto& row : rows_) {
-    if (!row.rect || place.y() < row.rect->top() - kReach || place.y() > row.rect->bottom() + kReach)
-      continue;
-    const auto band = bandHit(place, row);
-    if (band && band->part != Hit::Part::band) return finished(*band);
-    if (isFrameEdge) return finished(*frame);
-    if (band) return finished(*band);
-    if (frame) {
-      Hit found = *frame;
-      found.trend = row.trend;
-      return finished(found);
-    }
-    hit.part = Hit::Part::row;
-    hit.trend = row.trend;
-    return hit;
+  // A plateau's edge lies above the frame's, and that above a plateau's body.
+  if (band && (band->part != Hit::Part::band || !isFrameEdge)) {
+    hit.part = band->part;
+    hit.response = band->response;
+  } else if (frame) {
+    hit.part = frame->part;
   }
-  if (frame) return finished(*frame);
-  if (place.y() < bath_rect_->bottom() + kReach) hit.part = Hit::Part::bath;
-  if (place.y() > rhythm_rect_->top() - kReach) hit.part = Hit::Part::rhythm;
   return hit;
 }
 

@@ -37,16 +37,17 @@ void fillPattern(QPainter& painter, const QRectF& rect, Pattern pattern, const Q
   QList<QLineF> lines;
   if (pattern == Pattern::rising || pattern == Pattern::crossed) addSlanted(lines, rect, spacing, true);
   if (pattern == Pattern::falling || pattern == Pattern::crossed) addSlanted(lines, rect, spacing, false);
-  if (pattern == Pattern::upright) {
+  if (pattern == Pattern::upright || pattern == Pattern::squared) {
     for (double x = firstOnRaster(rect.left(), spacing); x < rect.right(); x += spacing)
       lines.append(QLineF(x, rect.top(), x, rect.bottom()));
   }
-  if (pattern == Pattern::level) {
+  if (pattern == Pattern::level || pattern == Pattern::squared) {
     for (double y = firstOnRaster(rect.top(), spacing); y < rect.bottom(); y += spacing)
       lines.append(QLineF(rect.left(), y, rect.right(), y));
   }
   painter.save();
-  const bool isSlanted = pattern != Pattern::upright && pattern != Pattern::level;
+  const bool isSlanted =
+      pattern == Pattern::rising || pattern == Pattern::falling || pattern == Pattern::crossed;
   painter.setRenderHint(QPainter::Antialiasing, isSlanted);
   QPen pen(color, 1.0);
   pen.setCapStyle(Qt::FlatCap);

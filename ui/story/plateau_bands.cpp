@@ -27,10 +27,9 @@ bool PlateauBands::isChosen(const response::Response& response) const {
 void PlateauBands::drawGround(QCPPainter& painter, const response::Response& response,
                               const QRectF& band) const {
   painter.fillRect(band, isChosen(response) ? state_.theme.accent_fill : state_.theme.plateau);
-  if (response.value) return;
-  fillPattern(painter, band,
-              response.status == response::Status::excluded ? Pattern::falling : Pattern::crossed,
-              state_.theme.excluded, 5.0);
+  // What cannot be read or is left out is hatched over the row already.
+  if (response.status == response::Status::arrested || response.status == response::Status::censored)
+    fillPattern(painter, band, Pattern::level, state_.theme.excluded, 5.0);
 }
 
 void PlateauBands::drawValue(QCPPainter& painter, const response::Response& response,

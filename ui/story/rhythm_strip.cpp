@@ -71,7 +71,7 @@ void RhythmStrip::drawWords(QCPPainter& painter, const session::RhythmBlock& blo
   const QFontMetricsF metrics(painter.font());
   const RhythmLook look = lookOf(block.kind);
   for (const QString& words : blockWords(block)) {
-    if (metrics.horizontalAdvance(words) + 10.0 > area.width()) continue;
+    if (metrics.horizontalAdvance(words) + 6.0 > area.width()) continue;
     if (look.isInverse) {
       painter.setPen(state_.theme.surface);
       painter.drawText(area, Qt::AlignCenter, words);
@@ -96,7 +96,7 @@ void RhythmStrip::drawBlock(QCPPainter& painter, const session::RhythmBlock& blo
     painter.drawLine(QLineF(area.left(), area.center().y(), area.right(), area.center().y()));
   } else {
     painter.fillRect(area, state_.theme.surface);
-    fillPattern(painter, area, look.pattern, ink, 5.0);
+    fillPattern(painter, area, look.pattern, ink, look.spacing);
     painter.setPen(look::thinPen(ink));
     if (look.pattern != Pattern::solid) painter.drawRect(area.adjusted(0.0, 0.0, -1.0, -1.0));
   }

@@ -20,7 +20,7 @@ constexpr int kRowGap = 4; // above and below each row
 constexpr int kRhythmHeight = 24;
 constexpr int kAxisHeight = 28;
 constexpr double kTickEvery = 90.0;  // pixels between times at the axis
-constexpr double kValueEvery = 24.0; // pixels between numbers of a row
+constexpr double kValueEvery = 18.0; // pixels between numbers of a row
 
 void addLayers(QCustomPlot& plot) {
   plot.addLayer(QString::fromLatin1(kGroundLayer), plot.layer(QStringLiteral("background")),
@@ -40,12 +40,8 @@ StoryFigure::StoryFigure(QCustomPlot& plot) : plot_(plot) {
   state_.gutter = kGutter;
   addLayers(plot_);
   look::dress(plot_, state_.theme);
-  QObject::connect(&plot_, &QCustomPlot::beforeReplot, &plot_, [this] { fitTicks(); });
+  QObject::connect(&plot_, &QCustomPlot::beforeReplot, &context_, [this] { fitTicks(); });
   build();
-}
-
-StoryFigure::~StoryFigure() {
-  plot_.disconnect(&plot_);
 }
 
 void StoryFigure::setTheme(const look::Theme& theme) {
@@ -195,6 +191,10 @@ void StoryFigure::build() {
   parts_.push_back(std::move(touch));
   dressRects();
   applyView();
+  // Places must be right at once: the pointer may ask before the replot comes.
+  for (const auto phase :
+       {QCPLayoutElement::upPreparation, QCPLayoutElement::upMargins, QCPLayoutElement::upLayout})
+    layout->update(phase);
   replot();
 }
 
@@ -242,7 +242,7 @@ void StoryFigure::replotTouch() {
   if (is_touch_due_) return;
   is_touch_due_ = true;
   QMetaObject::invokeMethod(
-      &plot_,
+      &context_,
       [this] {
         is_touch_due_ = false;
         plot_.layer(QString::fromLatin1(kTouchLayer))->replot();

@@ -36,6 +36,7 @@ struct Hit {
     rhythm
   };
   Part part = Part::nothing;
+  Part area = Part::nothing; ///< bath, row or rhythm that lies there, whatever lies over it
   Seconds time;
   std::size_t trend = 0;    ///< row: index of its trend
   std::size_t response = 0; ///< bands: index into the responses of `bands`
@@ -47,7 +48,6 @@ class StoryFigure {
 public:
   /// Takes over the plot: its layout and layers. The plot must outlive the figure's use.
   explicit StoryFigure(QCustomPlot& plot);
-  ~StoryFigure();
   StoryFigure(const StoryFigure&) = delete;
   StoryFigure& operator=(const StoryFigure&) = delete;
 
@@ -113,8 +113,10 @@ private:
   [[nodiscard]] std::optional<Hit> bandHit(QPointF place, const Row& row) const;
   [[nodiscard]] std::optional<Hit> frameHit(QPointF place) const;
   [[nodiscard]] const Row* rowOf(std::size_t trend) const;
+  [[nodiscard]] const Row* rowAt(double y) const;
 
   QCustomPlot& plot_;
+  QObject context_; ///< what is still to come for the figure ends with it
   FigureState state_;
   recording::Span view_{Seconds(0.0), Seconds(1.0)};
   std::size_t first_row_ = 0;

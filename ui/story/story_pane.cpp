@@ -3,16 +3,11 @@
 
 #include "ui/story/story_pane.h"
 
-#include <QContextMenuEvent>
 #include <QHBoxLayout>
-#include <QHelpEvent>
-#include <QKeyEvent>
 #include <QLabel>
-#include <QMenu>
 #include <QScrollBar>
 #include <QStackedWidget>
 #include <QToolButton>
-#include <QToolTip>
 #include <QVBoxLayout>
 
 #include "ui/story/exclude_bar.h"
@@ -160,6 +155,7 @@ void StoryPane::showResult() {
   exclude_bar_->setChannels(labels);
   if (!result) endExclusion();
   pages_->setCurrentIndex(result ? 1 : 0);
+  whole_->setVisible(!figure_->isWhole());
   showRows();
   showFrame();
   showChosen();
@@ -224,95 +220,6 @@ void StoryPane::readOutFrame() {
   figure_->touch().pointer.reset();
   figure_->replotTouch();
   readout_->setText(figure_->state().content ? frameText(focus_.start(), focus_.end()) : QString());
-}
-
-void StoryPane::askExclusion(Seconds start, Seconds end) {
-  if (document_.isReadOnly()) {
-    endExclusion();
-    return;
-  }
-  figure_->touch().selection = recording::Span{start, end};
-  figure_->replotTouch();
-  exclude_bar_->ask(start, end);
-}
-
-void StoryPane::endExclusion() {
-  gestures_->abort();
-  figure_->touch().selection.reset();
-  figure_->replotTouch();
-  if (exclude_bar_->isHidden()) return;
-  exclude_bar_->hide();
-  plot_->setFocus(Qt::OtherFocusReason);
-}
-
-void StoryPane::showMenu(const Hit& hit, const QPoint& globalPlace) {
-  if (!figure_->state().content) return;
-  QMenu menu(this);
-  menu.setObjectName(QStringLiteral("storyMenu"));
-  const bool isBand =
-      hit.part == Hit::Part::band || hit.part == Hit::Part::bandStart || hit.part == Hit::Part::bandEnd;
-  if (isBand) {
-    // The menu's entries speak of the chosen plateau: so this one becomes it.
-    focus_.chooseStep(stepOf(figure_->state().bands->responses.rows[hit.response]));
-    actions_->refresh();
-    menu.addActions({actions_->release(), actions_->leaveStepOut()});
-    menu.addSeparator();
-  }
-  menu.addActions({actions_->leaveStretchOut(), actions_->wholeRecording()});
-  menu.exec(globalPlace);
-}
-
-void StoryPane::contextMenuEvent(QContextMenuEvent* event) {
-  Hit hit;
-  const auto chosen = travel_->chosen();
-  if (chosen) {
-    hit.part = Hit::Part::band;
-    hit.response = *chosen;
-  }
-  const QPointF place = chosen ? figure_->bandRect(*chosen).center() : QPointF(plot_->rect().center());
-  showMenu(hit, plot_->mapToGlobal(place.toPoint()));
-  event->accept();
-}
-
-bool StoryPane::handleKey(int key) {
-  if (key == Qt::Key_Escape) return gestures_->abort();
-  if ((key == Qt::Key_Return || key == Qt::Key_Enter) && editing_->isActive()) {
-    editing_->place();
-    return true;
-  }
-  return false;
-}
-
-bool StoryPane::eventFilter(QObject* watched, QEvent* event) {
-  switch (event->type()) {
-  case QEvent::ToolTip: {
-    const auto* help = static_cast<QHelpEvent*>(event);
-    QToolTip::showText(help->globalPos(), tooltipText(*figure_, help->pos()), plot_);
-    return true;
-  }
-  case QEvent::KeyPress:
-    if (handleKey(static_cast<QKeyEvent*>(event)->key())) return true;
-    break;
-  case QEvent::ShortcutOverride:
-    // While something is being moved, Escape and Enter are about it.
-    if (editing_->isActive() || gestures_->isDragging()) {
-      const int key = static_cast<QKeyEvent*>(event)->key();
-      if (key == Qt::Key_Escape || key == Qt::Key_Return || key == Qt::Key_Enter) event->accept();
-    }
-    break;
-  case QEvent::FocusIn:
-  case QEvent::FocusOut:
-    figure_->touch().hasFocus = event->type() == QEvent::FocusIn;
-    figure_->replotTouch();
-    break;
-  case QEvent::Resize:
-    // The plot takes its new size first.
-    QMetaObject::invokeMethod(this, &StoryPane::showRows, Qt::QueuedConnection);
-    break;
-  default:
-    break;
-  }
-  return QWidget::eventFilter(watched, event);
 }
 
 } // namespace chronodrome::ui::story

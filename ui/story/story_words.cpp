@@ -25,8 +25,8 @@ constexpr std::array<Kind, 21> kKinds = {{
      "2nd degree",
      {Pattern::upright, Tone::caution, false}},
     {"two_to_one", "2:1 block", "2:1", {Pattern::upright, Tone::caution, false}},
-    {"high_degree_av_block", "high-degree AV block", "high degree", {Pattern::crossed, Tone::caution, false}},
-    {"complete_av_block", "complete AV block", "complete", {Pattern::crossed, Tone::fault, false}},
+    {"high_degree_av_block", "high-degree AV block", "high degree", {Pattern::squared, Tone::caution, false}},
+    {"complete_av_block", "complete AV block", "complete", {Pattern::crossed, Tone::fault, false, 3.5}},
     {"junctional_escape", "junctional escape", "escape", {Pattern::level, Tone::caution, false}},
     {"ventricular_escape", "ventricular escape", "escape", {Pattern::level, Tone::caution, false}},
     {"premature_atrial", "premature atrial", "premature", {Pattern::solid, Tone::caution, true}},
@@ -84,6 +84,7 @@ QStringList blockWords(const session::RhythmBlock& block) {
   }
   all << words;
   if (!brief.isEmpty() && brief != words) all << brief;
+  if (!block.ratio.empty() && brief == words) all << QString::fromStdString(block.ratio);
   return all;
 }
 
@@ -140,7 +141,7 @@ QStringList draggedText(const response::Response& response) {
 }
 
 QString rowUnitText(const session::Trend& trend) {
-  if (trend.unit == "1") return QStringLiteral("share of %1").arg(session::kShareAttempts);
+  if (trend.unit == "1") return QStringLiteral("over %1 beats").arg(session::kShareAttempts);
   return look::unitText(trend.unit);
 }
 

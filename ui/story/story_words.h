@@ -19,6 +19,7 @@ struct RhythmLook {
   Pattern pattern = Pattern::none;
   Tone tone = Tone::quiet;
   bool isInverse = false; ///< text on a filled block
+  double spacing = 5.0;   ///< of the pattern
 };
 RhythmLook lookOf(const std::string& kind);
 

@@ -41,25 +41,26 @@ void Travel::follow(const Hit& hit) {
   case Hit::Part::bandEnd:
     choosePlateau(hit.response);
     return;
-  case Hit::Part::rhythm: {
-    const auto& rhythm = figure_.state().content->result->rhythm;
-    const std::size_t at = session::episode_at(rhythm, hit.time);
-    if (at >= rhythm.episodes.size()) break;
-    const auto& episode = rhythm.episodes[at];
-    const Seconds length = episode.end - episode.start;
-    if (session::weight_of(episode.kind) == 0 || length > kLongEpisode) break;
-    const Seconds air = std::max(kAir * length, Seconds(1.0));
-    focus_.goTo(episode.start - air, episode.end + air);
-    return;
-  }
   case Hit::Part::nothing:
   case Hit::Part::gutter:
-  case Hit::Part::frameTab:
     return;
   default:
     break;
   }
-  toTime(hit.time);
+  if (hit.area == Hit::Part::nothing) return; // the frame's tab: it is here already
+  if (hit.area != Hit::Part::rhythm || !toEpisode(hit.time)) toTime(hit.time);
+}
+
+bool Travel::toEpisode(Seconds time) {
+  const auto& rhythm = figure_.state().content->result->rhythm;
+  const std::size_t at = session::episode_at(rhythm, time);
+  if (at >= rhythm.episodes.size()) return false;
+  const auto& episode = rhythm.episodes[at];
+  const Seconds length = episode.end - episode.start;
+  if (session::weight_of(episode.kind) == 0 || length > kLongEpisode) return false;
+  const Seconds air = std::max(kAir * length, Seconds(1.0));
+  focus_.goTo(episode.start - air, episode.end + air);
+  return true;
 }
 
 std::optional<std::size_t> Travel::chosen() const {

@@ -13,6 +13,7 @@ namespace {
 
 constexpr double kPixelsPerDot = 4.0; // beats farther apart than this are drawn one by one
 constexpr double kTick = 5.0;
+constexpr double kBlockedTick = 3.0;
 constexpr double kAxisRoom = 40.0; // between label and axis, for its numbers
 
 auto firstAtOrAfter(const std::vector<session::TrendPoint>& points, Seconds time) {
@@ -138,7 +139,7 @@ void TrendRow::drawTicks(QCPPainter& painter, const session::Trend& trend,
   painter.setPen(look::thinPen(state_.theme.of(trend.role)));
   for (std::size_t i = 0; i < blocked.size(); ++i) {
     const double x = rect_->left() + (double(i) + 0.5) * width;
-    if (blocked[i] != 0) painter.drawLine(QLineF(x, rect_->top(), x, rect_->top() + kTick));
+    if (blocked[i] != 0) painter.drawLine(QLineF(x, rect_->top(), x, rect_->top() + kBlockedTick));
   }
   painter.setPen(look::thinPen(state_.theme.text));
   double last = -1e9;

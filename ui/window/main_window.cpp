@@ -21,7 +21,7 @@ QWidget* editsPage(QUndoStack* stack, QWidget* parent) {
   auto* down = new QVBoxLayout(page);
   down->setContentsMargins(2 * look::kUnit, look::kUnit, 2 * look::kUnit, look::kUnit);
   auto* title = new QLabel(QStringLiteral("Edits of this session"), page);
-  title->setProperty("size", QStringLiteral("large"));
+  title->setProperty("textSize", QStringLiteral("large"));
   auto* hint = new QLabel(QStringLiteral("Choose a line to go back to it, or forward again."), page);
   hint->setProperty("quiet", true);
   hint->setWordWrap(true);

@@ -12,12 +12,13 @@
 namespace chronodrome::ui::window {
 namespace {
 
-constexpr int kColumn = 60 * look::kUnit;
+constexpr int kColumn = 72 * look::kUnit;
+constexpr int kEntryHeight = 7 * look::kUnit;
 
 QLabel* heading(const QString& text, QWidget* parent) {
   auto* label = new QLabel(text, parent);
   label->setProperty("quiet", true);
-  label->setProperty("size", QStringLiteral("small"));
+  label->setProperty("textSize", QStringLiteral("small"));
   return label;
 }
 
@@ -47,7 +48,7 @@ WelcomePage::WelcomePage(QAction* takeIn, QAction* open, QWidget* parent) : QWid
   down->setSpacing(look::kUnit);
 
   auto* title = new QLabel(QStringLiteral("No session is open"), column);
-  title->setProperty("size", QStringLiteral("large"));
+  title->setProperty("textSize", QStringLiteral("large"));
   auto* what =
       new QLabel(QStringLiteral("Take in a recording (CSV, EDF or EDF+), or open a session that was saved. "
                                 "Files can also be dropped here."),
@@ -120,12 +121,12 @@ QPushButton* WelcomePage::entry(const QString& head, const QString& about, const
   auto* name = new QLabel(head, button);
   auto* more = new QLabel(about, button);
   more->setProperty("quiet", true);
-  more->setProperty("size", QStringLiteral("small"));
+  more->setProperty("textSize", QStringLiteral("small"));
   for (auto* label : {name, more}) {
     label->setAttribute(Qt::WA_TransparentForMouseEvents);
     lines->addWidget(label);
   }
-  button->setMinimumHeight(lines->sizeHint().height());
+  button->setFixedHeight(kEntryHeight);
   return button;
 }
 

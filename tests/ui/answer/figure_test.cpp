@@ -63,7 +63,7 @@ TEST_CASE("how a response was read is told by the filling of its mark", "[answer
 TEST_CASE("the control stands left of a break in the axis", "[answer][pixels]") {
   const Shown shown(slowing());
   const auto& axis = shown.figure.view()->axis;
-  const double bottom = shown.figure.axisRect()->bottom() + 1.0;
+  const double bottom = shown.figure.axisRect()->bottom();
   const double gap = shown.figure.xAxis->coordToPixel(*axis.break_at);
   const double scale = shown.figure.xAxis->coordToPixel(-7.2);
   // The base line runs along the scale and is open between the strokes.

@@ -1,6 +1,7 @@
 // Chronodrome, GPL-3.0-or-later.
 #include <QSignalSpy>
 
+#include "base/digest.h"
 #include "document_desk.h"
 
 using namespace chronodrome;
@@ -46,6 +47,22 @@ TEST_CASE("results after saving are those of the saved file", "[ui][document]") 
   document.close();
   openAndSettle(again, path);
   CHECK(resultText(again) == text);
+}
+
+TEST_CASE("a result that comes after the save is that of the saved file", "[ui][document]") {
+  const Desk desk;
+  const QString path = desk.sample("guinea-pig-heart");
+  SessionDocument document;
+  openAndSettle(document, path);
+  document.exclude("RA", Seconds(60.0), Seconds(62.0), "pump");
+  REQUIRE(waitUntil([&] { return document.workShare() > 0.0; })); // well under way
+  REQUIRE(document.isStale());
+  REQUIRE(document.saveAs(desk.path("guinea-pig-heart/../guinea-pig-heart/late.session.json")).ok());
+  settle(document);
+  CHECK(document.path() == desk.path("guinea-pig-heart/late.session.json"));
+  CHECK(document.result()->session.path == document.path().toStdString());
+  CHECK(document.result()->session_sha256 == sha256_of(contentOf(document.path())));
+  CHECK(document.inputs()->session_sha256 == document.result()->session_sha256);
 }
 
 TEST_CASE("undo goes on behind a save", "[ui][document]") {

@@ -63,7 +63,6 @@ TEST_CASE("pictures of the figure", "[.shot]") {
   writer.setPageSize(QPageSize(QPageSize::A4));
   QCPPainter painter;
   painter.begin(&writer);
-  painter.setModes(QCPPainter::pmVectorized | QCPPainter::pmNoCaching);
   evidence::paintTraces(painter, QSize(680, 300), *result, Seconds(1028), Seconds(1032),
                         look::Theme::of(look::Mode::paper));
   painter.end();
@@ -107,6 +106,26 @@ TEST_CASE("pictures of the pane", "[.shot]") {
   open.key(Qt::Key_X);
   open.figure().replot();
   open.pane.grab().save(place(QStringLiteral("pane-reason.png")));
+}
+
+TEST_CASE("a picture of eight rows in little room", "[.shot]") {
+  auto inputs = test_support::sample_inputs("rabbit-heart");
+  const auto result = session::analyse(inputs, 0).value();
+  auto many = result;
+  for (std::size_t i = 0; many.channels.size() < 8; ++i) {
+    many.channels.push_back(result.channels[i % result.channels.size()]);
+    many.channels.back().label += std::to_string(i);
+    many.activations.push_back(result.activations[i % result.channels.size()]);
+  }
+  for (const auto& [name, size] :
+       {std::pair{"eight-small.png", QSize(900, 350)}, {"eight-large.png", QSize(1600, 900)}}) {
+    evidence::EvidenceFigure figure;
+    figure.resize(size);
+    figure.setScene(evidence::sceneOf(std::make_shared<const session::SessionResult>(many)));
+    figure.setView(Seconds(400), Seconds(404));
+    figure.replot();
+    figure.grab().save(place(QLatin1String(name)));
+  }
 }
 
 TEST_CASE("a picture of no recording, and of signals before an analysis", "[.shot]") {

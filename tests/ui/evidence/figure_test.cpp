@@ -95,7 +95,7 @@ TEST_CASE("a gap is drawn as a gap, hatched and named", "[ui]") {
   for (double time = 8.1; time < 11.95; time += 0.05)
     REQUIRE(column(time) == 0);
   int hatched = 0;
-  const QColor hatch = evidence::blended(light().excluded, light().surface, 0.55);
+  const QColor hatch = look::blended(light().excluded, light().surface, 0.55);
   for (int x = static_cast<int>(frame.time.xOf(Seconds(8.2))); x < frame.time.xOf(Seconds(11.8)); ++x)
     hatched += heightOf(image, x, frame.rect, hatch);
   CHECK(hatched > 1000);
@@ -206,7 +206,6 @@ TEST_CASE("traces on paper are drawn from lines, small and with their scale", "[
     writer.setResolution(96);
     QCPPainter painter;
     REQUIRE(painter.begin(&writer));
-    painter.setModes(QCPPainter::pmVectorized | QCPPainter::pmNoCaching);
     evidence::paintTraces(painter, {680, 300}, *result, Seconds(0.0), Seconds(1230.0),
                           look::Theme::of(look::Mode::paper));
     painter.end();

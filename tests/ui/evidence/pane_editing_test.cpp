@@ -155,6 +155,25 @@ TEST_CASE("a stretch is left out with a reason, and taken back in", "[ui]") {
   CHECK(open.settle());
 }
 
+TEST_CASE("the right button selects a stretch, with Shift of all rows", "[ui]") {
+  OpenPane open;
+  open.show(1030.0, 1032.0);
+  const QPoint from = open.at(1, 1030.5), to = open.at(1, 1031.0);
+  QTest::mousePress(&open.figure(), Qt::RightButton, Qt::ShiftModifier, from);
+  for (int step = 1; step <= 4; ++step) {
+    const QPoint at = from + (to - from) * step / 4;
+    QMouseEvent event(QEvent::MouseMove, at, open.figure().mapToGlobal(at), Qt::NoButton, Qt::RightButton,
+                      Qt::ShiftModifier);
+    QApplication::sendEvent(&open.figure(), &event);
+  }
+  QTest::mouseRelease(&open.figure(), Qt::RightButton, Qt::ShiftModifier, to);
+  REQUIRE(open.figure().overlay().selection);
+  CHECK(open.figure().overlay().selection->row == -1);
+  CHECK_THAT(open.figure().overlay().selection->start.value(), WithinAbs(1030.5, 0.01));
+  CHECK_THAT(open.figure().overlay().selection->end.value(), WithinAbs(1031.0, 0.01));
+  CHECK_FALSE(open.pane.cursors().is_pinned);
+}
+
 TEST_CASE("both cursors select what X leaves out", "[ui]") {
   OpenPane open;
   open.show(1030.0, 1032.0);

@@ -199,7 +199,6 @@ TEST_CASE("an ambiguous table is not read before the user has chosen", "[ui][ste
   shown.click_take_in();
   CHECK_FALSE(shown.session.has_value());
   choose(*decimal, "comma");
-  Q_EMIT decimal->activated(decimal->currentIndex()); // keys move the list, Return takes it
   REQUIRE(wait_until([&] { return !shown.form.isReading(); }));
   CHECK_FALSE(shown.form.isComplete()); // now the rate is missing
   shown.type("rateLineEdit", "1000");

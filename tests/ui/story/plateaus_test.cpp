@@ -2,6 +2,12 @@
 // Plateaus moved by a user's hands.
 #include "open_story.h"
 
+#include <QLineEdit>
+#include <QMenu>
+#include <QTimer>
+
+#include "ui/look/number_text.h"
+
 using namespace chronodrome;
 using namespace chronodrome::ui;
 using test_support::OpenStory;
@@ -142,6 +148,45 @@ TEST_CASE("keys choose, move and place a plateau; Delete gives it back to the ru
   REQUIRE(QTest::qWaitFor([&] { return !open.document.isStale(); }, 60000));
   CHECK(open.document.result()->responses.rows[index].window_start == before.window_start);
   CHECK_FALSE(open.action("actionReleaseWindow")->isEnabled());
+}
+
+TEST_CASE("the menu of a plateau gives it back to the rule, or asks why its step is left out", "[story]") {
+  OpenStory open;
+  const auto index = open.responseOf("rate:RA", 3);
+  const QRectF band = open.figure().bandRect(index);
+  const auto row = open.document.result()->responses.rows[index];
+  open.drag(band.center().toPoint(), band.center().toPoint() - QPoint(15, 0));
+  REQUIRE(open.document.session().windows.size() == 1);
+  REQUIRE(QTest::qWaitFor([&] { return !open.document.isStale(); }, 60000));
+  OpenStory::settle();
+  const auto choose = [&](const char* name) {
+    bool isFound = false;
+    QTimer::singleShot(0, &open.pane, [&] {
+      auto* menu = qobject_cast<QMenu*>(QApplication::activePopupWidget());
+      if (menu == nullptr) return;
+      for (auto* action : menu->actions()) {
+        if (action->objectName() != QLatin1String(name) || !action->isEnabled()) continue;
+        isFound = true;
+        action->trigger();
+      }
+      menu->close();
+    });
+    const QPoint place = open.figure().bandRect(index).center().toPoint();
+    QContextMenuEvent event(QContextMenuEvent::Mouse, place, open.plot->mapToGlobal(place));
+    QApplication::sendEvent(open.plot, &event);
+    OpenStory::settle();
+    return isFound;
+  };
+  REQUIRE(choose("actionReleaseWindow"));
+  REQUIRE(QTest::qWaitFor([&] { return !open.document.isStale(); }, 60000));
+  CHECK(open.document.session().windows.empty());
+  CHECK(open.document.result()->responses.rows[index].window_start == row.window_start);
+  REQUIRE(choose("actionLeaveStepOut"));
+  auto* from = open.pane.findChild<QLineEdit*>(QStringLiteral("excludeFromLineEdit"));
+  REQUIRE(from->isVisible());
+  const auto typed = look::typedTime(from->text());
+  REQUIRE(typed.has_value());
+  CHECK(*typed < row.window_start);
 }
 
 TEST_CASE("a stale result says so", "[story]") {
