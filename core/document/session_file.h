@@ -76,8 +76,8 @@ struct Correction {
 /// correction: replayed on every run.
 struct WindowChoice {
   int curve = 0;
-  Molar concentration; ///< of the step, as the drug log states it; 0: the control
-  std::string measure; ///< `rate:RA`; empty: every measure of the step
+  Molar concentration;        ///< of the step, as the drug log states it; 0: the control
+  std::string measure;        ///< `rate:RA`; empty: every measure of the step
   Seconds start, end;         ///< 0 <= start < end
   std::string when, who, why; ///< as in a correction
 };

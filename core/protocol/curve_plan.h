@@ -52,7 +52,8 @@ struct CurvePlan {
 /// the arrival of the last event before the curve's first addition that changes bath or pacing, to that
 /// addition; that of a curve whose agent was already in the bath has no length, and a warning says so. An
 /// addition of 0 is taken as vehicle, or as washout of an agent that is there, with a warning. Requires:
-/// events in order of time. Errors: those of follow_bath(); bad_value (column `curve` gives one number to two agents).
+/// events in order of time. Errors: those of follow_bath(); bad_value (column `curve` gives one number to two
+/// agents).
 Result<CurvePlan> plan_curves(const Protocol& protocol, const BathConditions& conditions,
                               Seconds recording_end);
 
