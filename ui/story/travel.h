@@ -32,7 +32,7 @@ public:
   [[nodiscard]] std::optional<std::size_t> chosen() const;
 
 private:
-  /// Shows the episode of rhythm at a time; false: it is regular, or too long to be shown whole.
+  /// Shows the rhythm block at a time; false: it is regular, or too long to be shown whole.
   bool toEpisode(Seconds time);
   [[nodiscard]] std::string measure() const;
 
